@@ -1,0 +1,4 @@
+export * from './accounts';
+export * from './organisations';
+export * from './dossiers';
+export * from './reports';

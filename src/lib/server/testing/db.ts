@@ -1,0 +1,30 @@
+import { randomBytes } from 'node:crypto';
+import { migrate } from 'drizzle-orm/node-postgres/migrator';
+import pg from 'pg';
+import { openDatabase, type Database } from '../db';
+
+/**
+ * A fresh, migrated database on the test cluster (TEST_DATABASE_URL, a role that may create databases).
+ * @returns the database, its address and `drop`, which closes the pool and removes it.
+ */
+export async function testDatabase(): Promise<{ db: Database; url: string; drop: () => Promise<void> }> {
+	const server = process.env.TEST_DATABASE_URL;
+	if (server === undefined) throw new Error('TEST_DATABASE_URL is not set; run the tests by `npm test`.');
+	const name = `t_${randomBytes(6).toString('hex')}`;
+	const admin = new pg.Client({ connectionString: server });
+	await admin.connect();
+	await admin.query(`create database ${name}`);
+	const url = new URL(server);
+	url.pathname = `/${name}`;
+	const { db, pool } = openDatabase(url.href, 20);
+	await migrate(db, { migrationsFolder: 'drizzle' });
+	return {
+		db,
+		url: url.href,
+		drop: async () => {
+			await pool.end();
+			await admin.query(`drop database ${name} with (force)`);
+			await admin.end();
+		}
+	};
+}
