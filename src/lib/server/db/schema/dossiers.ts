@@ -22,6 +22,8 @@ export const dossiers = pgTable(
 		reliance: text('reliance').notNull().default(''),
 		projectNumber: text('project_number').notNull().default(''),
 		orderNumber: text('order_number').notNull().default(''),
+		/** Counts saves of the fields above; a save states the version it started from. */
+		version: integer('version').notNull().default(1),
 		createdBy: uuid('created_by').references(() => users.id, { onDelete: 'set null' }),
 		createdAt: instant('created_at').notNull().defaultNow(),
 		updatedAt: instant('updated_at').notNull().defaultNow(),
