@@ -32,3 +32,15 @@ export class InvalidInputError extends Error {
 		this.fields = fields;
 	}
 }
+
+/** More tries than the limit allows; `retryAfter` in seconds. */
+export class TooManyRequestsError extends Error {
+	readonly retryAfter: number;
+
+	constructor(retryAfter: number) {
+		const minutes = Math.max(1, Math.ceil(retryAfter / 60));
+		super(`Too many tries. Please try again in ${minutes} ${minutes === 1 ? 'minute' : 'minutes'}.`);
+		this.name = 'TooManyRequestsError';
+		this.retryAfter = retryAfter;
+	}
+}

@@ -49,6 +49,7 @@ export const sessions = pgTable(
 			.references(() => users.id, { onDelete: 'cascade' }),
 		expires: instant('expires').notNull(),
 		createdAt: instant('created_at').notNull().defaultNow(),
+		lastSeenAt: instant('last_seen_at').notNull().defaultNow(),
 		userAgent: text('user_agent')
 	},
 	(t) => [index('sessions_user').on(t.userId)]
