@@ -116,7 +116,11 @@ export async function issueCertificate(
 	issuer?: Pick<Issued, 'der' | 'privateKey'>
 ): Promise<Issued> {
 	const keys = await crypto.subtle.generateKey(algorithm, true, ['sign', 'verify']);
-	const subject = [{ O: [cleanName(names.organisation)] }, { CN: [cleanName(names.commonName)] }];
+	// As UTF8String objects: as plain text the library reads quotation marks and # as syntax.
+	const subject = [
+		{ O: [{ utf8String: cleanName(names.organisation) }] },
+		{ CN: [{ utf8String: cleanName(names.commonName) }] }
+	];
 	const parent = issuer && new X509Certificate(Uint8Array.from(issuer.der));
 	const issuerKeys = issuer === undefined ? keys : await importPair(issuer.privateKey);
 	const notBefore = new Date(Math.floor(at.getTime() / 1000) * 1000);
@@ -124,7 +128,7 @@ export async function issueCertificate(
 	const certificate = await X509CertificateGenerator.create({
 		serialNumber: newSerial(),
 		subject,
-		issuer: parent?.subjectName.toJSON() ?? subject,
+		issuer: parent?.subjectName ?? subject,
 		notBefore,
 		notAfter: parent !== undefined && parent.notAfter < notAfter ? parent.notAfter : notAfter,
 		publicKey: keys.publicKey,
