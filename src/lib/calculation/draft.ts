@@ -82,6 +82,8 @@ export interface CalculationDraft {
 	};
 	claim: ClaimDraft | null;
 	limit: LimitDraft | null;
+	/** The unit in which temperatures are shown; every figure is computed in kelvin. */
+	temperatureUnit: 'K' | 'degC' | 'degF';
 	/** Sections that the author has been through, by group id. */
 	visited: string[];
 }
