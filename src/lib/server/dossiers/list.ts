@@ -1,0 +1,74 @@
+import { and, count, eq, isNull, sql, type SQL } from 'drizzle-orm';
+import type { Listed, ListQuery } from '$lib/lists/query';
+import type { DossierColumn } from '$lib/lists/shapes';
+import { requireAction } from '../access/can';
+import type { Membership } from '../access/membership';
+import { database, type Queryable } from '../db';
+import { calculations, dossiers, reports } from '../db/schema';
+import { matching, ordered, paged } from '../lists/search';
+
+export interface DossierRow {
+	id: string;
+	title: string;
+	client: string;
+	projectNumber: string;
+	calculations: number;
+	reports: number;
+	updatedAt: Date;
+}
+
+const sortedBy: Record<DossierColumn, SQL> = {
+	title: sql`lower(${dossiers.title})`,
+	client: sql`lower(${dossiers.client})`,
+	number: sql`lower(${dossiers.projectNumber})`,
+	changed: sql`${dossiers.updatedAt}`
+};
+
+/** The organisation's dossiers: two queries, whatever the number of rows. */
+export async function listDossiers(
+	membership: Membership | null,
+	query: ListQuery<DossierColumn>,
+	db: Queryable = database()
+): Promise<Listed<DossierRow>> {
+	requireAction(membership, 'dossier.read');
+	const own = and(eq(dossiers.organisationId, membership.organisationId), isNull(dossiers.deletedAt));
+	const found = matching(query.q, [
+		dossiers.title,
+		dossiers.client,
+		dossiers.question,
+		dossiers.projectNumber,
+		dossiers.orderNumber
+	]);
+	return paged(
+		query,
+		async () => {
+			const [counted] = await db
+				.select({
+					total: count(),
+					matching: sql<number>`count(*) filter (where ${found ?? sql`true`})`.mapWith(Number)
+				})
+				.from(dossiers)
+				.where(own);
+			return counted ?? { total: 0, matching: 0 };
+		},
+		(limit, offset) =>
+			db
+				.select({
+					id: dossiers.id,
+					title: dossiers.title,
+					client: dossiers.client,
+					projectNumber: dossiers.projectNumber,
+					calculations: db.$count(
+						calculations,
+						and(eq(calculations.dossierId, dossiers.id), isNull(calculations.deletedAt))
+					),
+					reports: db.$count(reports, and(eq(reports.dossierId, dossiers.id), isNull(reports.deletedAt))),
+					updatedAt: dossiers.updatedAt
+				})
+				.from(dossiers)
+				.where(and(own, found))
+				.orderBy(...ordered(sortedBy[query.sort], query.order, dossiers.id))
+				.limit(limit)
+				.offset(offset)
+	);
+}

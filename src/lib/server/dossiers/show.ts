@@ -1,0 +1,43 @@
+import type { Listed } from '$lib/lists/query';
+import { calculationList, reportList } from '$lib/lists/shapes';
+import { requireAction } from '../access/can';
+import type { Membership } from '../access/membership';
+import { listCalculations, type CalculationRow } from '../calculations/list';
+import { database, type Queryable } from '../db';
+import { listEvidence, type EvidenceRow } from '../evidence/list';
+import { listReports, type ReportRow } from '../reports/list';
+import { findDossier, type Dossier } from './find';
+
+export interface DossierPage {
+	dossier: Dossier;
+	calculations: Listed<CalculationRow>;
+	reports: Listed<ReportRow>;
+	evidence: EvidenceRow[];
+}
+
+/** A dossier with the first page of its calculations and reports, latest work first, and all its files. */
+export async function showDossier(
+	membership: Membership | null,
+	id: string,
+	db: Queryable = database()
+): Promise<DossierPage> {
+	requireAction(membership, 'dossier.read');
+	const bare = { q: '', order: 'desc', page: 1, state: '' } as const;
+	const dossier = await findDossier(db, membership, id);
+	const [calculations, reports, evidence] = await Promise.all([
+		listCalculations(membership, { ...bare, sort: calculationList.sort }, id, db),
+		listReports(membership, { ...bare, sort: reportList.sort }, id, db),
+		listEvidence(membership, id, db)
+	]);
+	return { dossier, calculations, reports, evidence };
+}
+
+/** The dossier alone, as its edit form needs it. */
+export async function openDossier(
+	membership: Membership | null,
+	id: string,
+	db: Queryable = database()
+): Promise<Dossier> {
+	requireAction(membership, 'dossier.read');
+	return findDossier(db, membership, id);
+}
