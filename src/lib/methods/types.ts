@@ -196,15 +196,26 @@ export interface Setting {
 
 export type Columns = Readonly<Record<string, Float64Array>>;
 
+/** A family of curves over one axis, evaluated over columns of trials so that a coverage band can be drawn. */
+export interface CurveFamily {
+	x: Series['x'];
+	curves: readonly Omit<Series['curves'][number], 'values' | 'low' | 'high'>[];
+	/** False where one evaluation is too dear to repeat for a band. */
+	banded: boolean;
+	/** Fills the first `n` entries of each curve's column at abscissa `index`, in the curve's own unit. */
+	evaluate(index: number, inputs: Columns, n: number, out: Record<string, Float64Array>): void;
+}
+
 /** One prepared question. `evaluate` fills the first `n` entries of each output column from SI input columns. */
 export interface PreparedMethod {
 	/** Input columns that `evaluate` reads; all present, exact ones filled with their value. */
 	columns: readonly string[];
 	/** Outputs that this setting determines, in the order of presentation. */
 	outputs: readonly OutputSpec[];
+	/** Output columns are in SI. */
 	evaluate(inputs: Columns, n: number, out: Record<string, Float64Array>): void;
-	/** Curves at the best estimates, in the units they are shown in. */
-	series(): Record<string, Series>;
+	/** Curves by key of the result's `series`. */
+	series: Readonly<Record<string, CurveFamily>>;
 }
 
 /** What a method may look at when it raises its own cautions. */

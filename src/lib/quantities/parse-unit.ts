@@ -87,22 +87,38 @@ class UnitReader {
 		return this.kind === 0;
 	}
 
+	private is(text: string): boolean {
+		return this.kind !== 0 && this.word === text;
+	}
+
+	private isName(): boolean {
+		return this.kind === 1;
+	}
+
+	private isNumber(): boolean {
+		return this.kind === 2;
+	}
+
+	private isSymbol(): boolean {
+		return this.kind === 3;
+	}
+
 	/** Factors left to right; a space multiplies, as `*` does, and only the factor after `/` is divided by. */
 	read(sign: number, depth: number): void {
 		let divide = false;
 		for (let first = true; !this.failed; first = false) {
-			if (this.kind === 0 || (this.kind === 3 && this.word === ')')) {
+			if (this.done || this.is(')')) {
 				this.failed ||= first || divide;
 				return;
 			}
-			if (this.kind === 3 && this.word !== '(') {
-				if (first || divide || (this.word !== '*' && this.word !== '/' && this.word !== '·')) {
+			if (this.isSymbol() && !this.is('(')) {
+				if (first || divide || (!this.is('*') && !this.is('/') && !this.is('·'))) {
 					this.failed = true;
 					return;
 				}
-				divide = this.word === '/';
+				divide = this.is('/');
 				this.advance();
-				if (!(this.kind === 1 || (this.kind === 3 && this.word === '('))) {
+				if (!(this.isName() || this.is('('))) {
 					this.failed = true;
 					return;
 				}
@@ -113,36 +129,36 @@ class UnitReader {
 	}
 
 	private readFactor(sign: number, depth: number): void {
-		if (this.kind === 3 && this.word === '(' && depth < 4) {
+		if (this.is('(') && depth < 4) {
 			this.advance();
 			this.read(sign, depth + 1);
-			if (this.word !== ')') this.failed = true;
+			if (!this.is(')')) this.failed = true;
 			this.advance();
 			return;
 		}
-		if (this.kind === 2 && this.word === '1' && this.factors.length === 0) {
+		if (this.isNumber() && this.is('1') && this.factors.length === 0) {
 			this.advance();
 			return;
 		}
-		const named = this.kind === 1 ? find(this.word) : undefined;
+		const named = this.isName() ? find(this.word) : undefined;
 		if (named === undefined) {
 			this.failed = true;
 			return;
 		}
 		this.advance();
 		let exponent = sign;
-		if (this.kind === 3 && this.word === '^') {
+		if (this.is('^')) {
 			this.advance();
-			const bracket = this.kind === 3 && this.word === '(';
+			const bracket = this.is('(');
 			if (bracket) this.advance();
-			if (this.kind !== 2) {
+			if (!this.isNumber()) {
 				this.failed = true;
 				return;
 			}
 			exponent *= Number(this.word);
 			this.advance();
 			if (bracket) {
-				if (this.word !== ')') this.failed = true;
+				if (!this.is(')')) this.failed = true;
 				this.advance();
 			}
 		}

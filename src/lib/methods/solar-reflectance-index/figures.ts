@@ -1,0 +1,33 @@
+import { attachUnit, formatNumber } from '../../quantities';
+import type { FigureSpec } from '../types';
+
+const kelvin = (value: number | undefined) => attachUnit(formatNumber(value ?? NaN, 1), 'K');
+
+export const figures: readonly FigureSpec[] = [
+	{
+		series: 'indexOverReflectance',
+		title: 'Solar reflectance index over solar reflectance',
+		finding(series) {
+			const values = series.curves[0]?.values ?? [];
+			const per = ((values.at(-1) ?? NaN) - (values[0] ?? NaN)) / 10;
+			return `A tenth more of the sunlight reflected raises the index by about ${formatNumber(per, 0)} at this emittance and wind.`;
+		}
+	},
+	{
+		series: 'temperatureOverReflectance',
+		title: 'Surface temperature over solar reflectance',
+		finding(series) {
+			const low = series.curves.find(({ id }) => id === 'lowWind')?.values[0];
+			const high = series.curves.find(({ id }) => id === 'highWind')?.values[0];
+			return `Wind matters most on a dark surface: one that reflects nothing reaches ${kelvin(low)} in low and ${kelvin(high)} in high wind.`;
+		}
+	},
+	{
+		series: 'temperatureOverConvection',
+		title: 'Surface temperature over the convection coefficient',
+		finding(series) {
+			const values = series.curves[0]?.values ?? [];
+			return `From the standard's low to its high wind the surface cools from ${kelvin(values[0])} to ${kelvin(values.at(-1))}.`;
+		}
+	}
+];
