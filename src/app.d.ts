@@ -12,6 +12,8 @@ declare global {
 			requestId: string;
 			/** The signed-in person, or null. */
 			person: Person | null;
+			/** Digest that names the person's session, or null. */
+			sessionId: string | null;
 			/** The organisation that the person is acting in, with their roles there, or null. */
 			membership: Membership | null;
 		}

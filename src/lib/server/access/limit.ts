@@ -52,11 +52,7 @@ export async function giveBack(key: string, db: Database = database()): Promise<
 		.update(rateWindows)
 		.set({ count: sql`${rateWindows.count} - 1` })
 		.where(
-			and(
-				eq(rateWindows.key, stored(key)),
-				eq(rateWindows.windowStart, newest),
-				gt(rateWindows.count, 0)
-			)
+			and(eq(rateWindows.key, stored(key)), eq(rateWindows.windowStart, newest), gt(rateWindows.count, 0))
 		);
 }
 

@@ -1,12 +1,19 @@
 import { error } from '@sveltejs/kit';
-import { ConflictError, ForbiddenError, InvalidInputError, NotFoundError } from '../access/errors';
+import {
+	ConflictError,
+	ForbiddenError,
+	InvalidInputError,
+	NotFoundError,
+	TooManyRequestsError
+} from '../access/errors';
 
 /** HTTP status of an error that a use case throws on purpose; undefined for a fault of ours. */
-export function statusOf(cause: unknown): 400 | 403 | 404 | 409 | undefined {
+export function statusOf(cause: unknown): 400 | 403 | 404 | 409 | 429 | undefined {
 	if (cause instanceof NotFoundError) return 404;
 	if (cause instanceof ForbiddenError) return 403;
 	if (cause instanceof ConflictError) return 409;
 	if (cause instanceof InvalidInputError) return 400;
+	if (cause instanceof TooManyRequestsError) return 429;
 	return undefined;
 }
 

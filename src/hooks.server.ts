@@ -1,0 +1,19 @@
+import { sequence } from '@sveltejs/kit/hooks';
+import { authentication } from '$lib/server/hooks/authentication';
+import { reportError } from '$lib/server/hooks/errors';
+import { guard } from '$lib/server/hooks/guard';
+import { redirectToOrigin } from '$lib/server/hooks/loopback';
+import { requestId } from '$lib/server/hooks/request-id';
+import { sameOrigin } from '$lib/server/hooks/same-origin';
+import { securityHeaders } from '$lib/server/hooks/security-headers';
+
+export const handle = sequence(
+	requestId,
+	securityHeaders,
+	redirectToOrigin,
+	sameOrigin,
+	authentication,
+	guard
+);
+
+export const handleError = reportError;

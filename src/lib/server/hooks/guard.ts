@@ -1,0 +1,27 @@
+import { redirect, type Handle } from '@sveltejs/kit';
+
+/** Pages of a signed-in person that need no organisation yet. */
+const withoutOrganisation = new Set(['/(app)/organisation/new', '/(app)/account']);
+
+/**
+ * Everything under (app), pages, actions and endpoints alike, is for signed-in members. The use cases check again; this
+ * is what sends a reader to the right page instead of to an error.
+ */
+export const guard: Handle = async ({ event, resolve }) => {
+	const { locals, route, url, request } = event;
+	if (!route.id?.startsWith('/(app)')) return resolve(event);
+	if (locals.person === null) {
+		if (request.headers.get('accept')?.includes('text/html') !== true && !event.isDataRequest) {
+			return Response.json({ message: 'Please sign in again.' }, { status: 401 });
+		}
+		// Back to the page, not to one of its actions.
+		const query = new URLSearchParams([...url.searchParams].filter(([name]) => !name.startsWith('/')));
+		const back = url.pathname + (query.size > 0 ? `?${query}` : '');
+		const expired = request.method === 'POST' ? '&notice=expired' : '';
+		redirect(303, `/sign-in?returnTo=${encodeURIComponent(back)}${expired}`);
+	}
+	if (locals.membership === null && !withoutOrganisation.has(route.id)) {
+		redirect(303, '/organisation/new');
+	}
+	return resolve(event);
+};

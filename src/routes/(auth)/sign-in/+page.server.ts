@@ -1,0 +1,39 @@
+import { redirect } from '@sveltejs/kit';
+import { signInSchema } from '$lib/schemas/accounts';
+import { signIn } from '$lib/server/accounts/auth';
+import { rememberAddress } from '$lib/server/accounts/pending-address';
+import { UnconfirmedAddressError } from '$lib/server/accounts/sign-in';
+import { orFormFault, readForm, typedValues } from '$lib/server/http/forms';
+import { safeReturnTo } from '$lib/server/http/return-to';
+import type { Actions, PageServerLoad } from './$types';
+
+const home = '/dossiers';
+
+const notices: Readonly<Record<string, string>> = {
+	expired: 'Your session has ended. Sign in again to go on.',
+	'signed-out': 'You are signed out.',
+	'password-changed': 'Your password is changed. Sign in with the new one.',
+	confirmed: 'Your address is confirmed. Sign in to go on.'
+};
+
+export const load: PageServerLoad = ({ locals, url }) => {
+	const returnTo = safeReturnTo(url.searchParams.get('returnTo'), home);
+	if (locals.person !== null) redirect(303, returnTo);
+	return { returnTo, notice: notices[url.searchParams.get('notice') ?? ''] };
+};
+
+export const actions: Actions = {
+	default: async (event) => {
+		const form = await event.request.formData();
+		const values = typedValues(form, ['password']);
+		const read = readForm(form, signInSchema, ['password']);
+		if ('fault' in read) return read.fault;
+		const work = signIn(event, read.data).catch((cause: unknown) => {
+			if (cause instanceof UnconfirmedAddressError) rememberAddress(event.cookies, read.data.email);
+			throw cause;
+		});
+		const done = await orFormFault(event, work, values);
+		if ('fault' in done) return done.fault;
+		redirect(303, safeReturnTo(values.returnTo, home));
+	}
+};
