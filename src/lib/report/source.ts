@@ -99,5 +99,6 @@ export interface ReportSource {
 	review: ReviewSource;
 	/** Earlier and present revisions, oldest first. */
 	history: RevisionSource[];
-	temperatureUnit: TemperatureUnit;
+	/** For the whole report; each calculation's own choice where it is left out. */
+	temperatureUnit?: TemperatureUnit;
 }

@@ -128,8 +128,18 @@ export interface GlyphRunText {
 	family: FontFamily;
 }
 
-/** Characters that order or join others and print nothing themselves; every face may do without them. */
-const invisible = /[\u200B-\u200F\u202A-\u202E\u2060\u2066-\u2069\uFEFF\uFE00-\uFE0F]/u;
+/** Characters that order, join or vary others and print nothing themselves; every face may do without them. */
+const invisible: readonly (readonly [number, number])[] = [
+	[0x200b, 0x200f],
+	[0x202a, 0x202e],
+	[0x2060, 0x2069],
+	[0xfe00, 0xfe0f],
+	[0xfeff, 0xfeff]
+];
+
+function isInvisible(code: number): boolean {
+	return invisible.some(([low, high]) => code >= low && code <= high);
+}
 
 /**
  * Splits a text into runs that one typeface can print: the wanted one, or Noto Sans Math for what it lacks. Throws
@@ -139,8 +149,8 @@ export function splitByGlyphs(text: string, family: FontFamily, style: FontStyle
 	const main = openFont(family, style);
 	const runs: GlyphRunText[] = [];
 	for (const character of text) {
-		if (invisible.test(character)) continue;
 		const code = character.codePointAt(0) ?? 0;
+		if (isInvisible(code)) continue;
 		const control = character === '\n' || character === '\t';
 		let wanted: FontFamily = family;
 		if (!control && !main.hasGlyphForCodePoint(code)) {

@@ -1,0 +1,9 @@
+export { recordAttachment, recordFileName, recordFormat } from './attachment';
+export { buildReportModel, composeAnswer, type BuildContext } from './build';
+export { dayText, instantText } from './dates';
+export { unmetDuties, type Duty } from './duties';
+export { equationNumbers, equationRows } from './equations';
+export { figureRows, temperatureTeller } from './figures';
+export * from './model';
+export type * from './source';
+export { emptyReportText, type ReportText } from './text';

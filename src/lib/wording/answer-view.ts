@@ -1,0 +1,86 @@
+import type { CalculationDraft } from '../calculation/draft';
+import { primaryOutput } from '../calculation/new-draft';
+import type { Caution, CautionLevel, ComputeResult } from '../calculation/types';
+import type { Method, OutputSpec } from '../methods/types';
+import { presentOutput } from './present';
+
+/** The running answer beside the form, as words and printed numbers; plain JSON. */
+export interface AnswerView {
+	/** What is averaged: "Mean over the sunlit side". */
+	label: string;
+	value?: string;
+	/** "standard uncertainty 0.9 K" */
+	spread?: string;
+	/** "95 % interval 307.1 to 310.8 K" */
+	interval?: string;
+	others: { label: string; value: string }[];
+	/** Share of the uncertainty of the answer by input id, 0 to 1. */
+	shares: Record<string, number>;
+	/** The gravest caution, if any, and how many there are in all. */
+	caution?: Pick<Caution, 'code' | 'level' | 'text'>;
+	cautions: number;
+	/** Fault by field id; none where there is a value. */
+	faults: Record<string, string>;
+}
+
+const gravity: Readonly<Record<CautionLevel, number>> = { stop: 2, caution: 1, note: 0 };
+
+/** The output that a draft is about: the compared one, or the method's most direct answer. */
+export function answeredOutput(draft: CalculationDraft, method: Method): OutputSpec {
+	const compared =
+		draft.kind === 'check-claim'
+			? draft.claim?.output
+			: draft.kind === 'test-limit'
+				? draft.limit?.output
+				: undefined;
+	return method.outputs.find(({ id }) => id === compared) ?? primaryOutput(method);
+}
+
+export function emptyAnswer(
+	draft: CalculationDraft,
+	method: Method,
+	faults: Record<string, string>
+): AnswerView {
+	return { label: answeredOutput(draft, method).label, others: [], shares: {}, cautions: 0, faults };
+}
+
+/** A computed result as the running answer shows it. */
+export function answerView(draft: CalculationDraft, method: Method, result: ComputeResult): AnswerView {
+	const asked = answeredOutput(draft, method);
+	const scale = draft.temperatureUnit;
+	const main = result.outputs[asked.id];
+	const others = method.outputs.flatMap((output) => {
+		if (output.id === asked.id) return [];
+		const computed = result.outputs[output.id];
+		if (computed !== undefined) {
+			return [{ label: output.label, value: presentOutput(computed, output, scale).estimate }];
+		}
+		const missing = (output.needs ?? [])
+			.map((id) => method.inputs.find((input) => input.id === id)?.name)
+			.find((name) => name !== undefined);
+		return missing === undefined ? [] : [{ label: output.label, value: `needs the ${missing}` }];
+	});
+	const gravest = [...result.cautions].sort((a, b) => gravity[b.level] - gravity[a.level])[0];
+	const rest = {
+		label: asked.label,
+		others,
+		cautions: result.cautions.length,
+		faults: {},
+		...(gravest === undefined
+			? {}
+			: { caution: { code: gravest.code, level: gravest.level, text: gravest.text } })
+	};
+	if (main === undefined) return { ...rest, shares: {} };
+	const shown = presentOutput(main, asked, scale);
+	return {
+		...rest,
+		value: shown.estimate,
+		shares: Object.fromEntries(
+			Object.entries(main.sensitivity ?? {}).map(([id, entry]) => [id, entry.share])
+		),
+		...(shown.uncertainty === undefined ? {} : { spread: `standard uncertainty ${shown.uncertainty}` }),
+		...(shown.low === undefined || shown.high === undefined
+			? {}
+			: { interval: `${shown.coverage ?? ''} interval ${shown.low} to ${shown.high}`.trim() })
+	};
+}
