@@ -1,20 +1,14 @@
 import { and, count, desc, eq, isNull, sql, type SQL } from 'drizzle-orm';
 import type { QuestionKind } from '$lib/calculation/draft';
-import type { OutputResult } from '$lib/calculation/types';
 import type { Listed, ListQuery } from '$lib/lists/query';
 import type { CalculationColumn } from '$lib/lists/shapes';
+import { methods } from '$lib/methods';
+import type { RunOutcome } from '$lib/wording/answer-in-brief';
 import { requireAction } from '../access/can';
 import type { Membership } from '../access/membership';
 import { database, type Queryable } from '../db';
 import { calculations, dossiers, runs } from '../db/schema';
 import { matching, ordered, paged } from '../lists/search';
-
-/** What a list says of a run: enough to write its answer in a few figures. */
-export interface RunOutcome {
-	method: string;
-	outputs: Record<string, OutputResult>;
-	verdict: string | null;
-}
 
 export interface CalculationRow {
 	id: string;
@@ -31,10 +25,16 @@ export interface CalculationRow {
 
 const method = sql<string | null>`${calculations.draft} ->> 'method'`;
 
+/** What the list shows is what is searched and sorted by: the method's title, not its id. */
+const methodTitle = sql`case ${method} ${sql.join(
+	methods.map(({ id, title }) => sql`when ${id} then ${title}`),
+	sql` `
+)} else coalesce(${method}, '') end`;
+
 const sortedBy: Record<CalculationColumn, SQL> = {
 	title: sql`lower(${calculations.title})`,
 	dossier: sql`lower(${dossiers.title})`,
-	method: sql`coalesce(${method}, '')`,
+	method: sql`lower(${methodTitle})`,
 	changed: sql`${calculations.updatedAt}`
 };
 
@@ -42,7 +42,11 @@ const sortedBy: Record<CalculationColumn, SQL> = {
 export const outcomeOfRun = sql<RunOutcome>`jsonb_build_object(
 	'method', ${runs.result} -> 'method' ->> 'id',
 	'outputs', ${runs.result} -> 'outputs',
-	'verdict', ${runs.result} -> 'finding' ->> 'verdict'
+	'compared', case ${runs.draft} ->> 'kind'
+		when 'check-claim' then ${runs.draft} -> 'claim' ->> 'output'
+		when 'test-limit' then ${runs.draft} -> 'limit' ->> 'output'
+	end,
+	'scale', ${runs.draft} ->> 'temperatureUnit'
 )`;
 
 /** @param dossierId narrows the list to one dossier. */
@@ -59,7 +63,7 @@ export async function listCalculations(
 		isNull(dossiers.deletedAt),
 		dossierId === undefined ? undefined : eq(calculations.dossierId, dossierId)
 	);
-	const found = matching(query.q, [calculations.title, dossiers.title, dossiers.client, method]);
+	const found = matching(query.q, [calculations.title, dossiers.title, dossiers.client, methodTitle]);
 	const latest = db
 		.select({ outcome: outcomeOfRun.as('outcome') })
 		.from(runs)

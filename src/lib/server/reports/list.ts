@@ -1,9 +1,10 @@
 import { and, count, eq, isNull, sql, type SQL } from 'drizzle-orm';
 import type { Listed, ListQuery } from '$lib/lists/query';
 import type { ReportColumn } from '$lib/lists/shapes';
+import type { RunOutcome } from '$lib/wording/answer-in-brief';
 import { requireAction } from '../access/can';
 import type { Membership } from '../access/membership';
-import { outcomeOfRun, type RunOutcome } from '../calculations/list';
+import { outcomeOfRun } from '../calculations/list';
 import { database, type Queryable } from '../db';
 import { dossiers, reports, runs, users } from '../db/schema';
 import { matching, ordered, paged } from '../lists/search';
