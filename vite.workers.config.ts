@@ -1,7 +1,7 @@
 import { fileURLToPath } from 'node:url';
 import { defineConfig } from 'vite';
 
-/* The worker process and its threads, built apart from the web server: adapter-node empties build/ each time. */
+/* The worker process and the programs run beside it, built apart from the web server: adapter-node empties build/. */
 export default defineConfig({
 	resolve: { alias: { $lib: fileURLToPath(new URL('./src/lib', import.meta.url)) } },
 	publicDir: false,
@@ -12,7 +12,9 @@ export default defineConfig({
 		target: 'node20',
 		rolldownOptions: {
 			input: {
-				worker: 'src/worker/main.ts'
+				worker: 'src/worker/main.ts',
+				migrate: 'src/worker/migrate.ts',
+				demo: 'src/worker/demo.ts'
 			},
 			output: { entryFileNames: '[name].js' }
 		}

@@ -24,6 +24,12 @@ export function database(): Database {
 	return opened.db;
 }
 
+/** The pool under `database()`, for the job queue, which speaks SQL of its own. */
+export function databasePool(): pg.Pool {
+	opened ??= openDatabase(env().DATABASE_URL);
+	return opened.pool;
+}
+
 /** Ends the process's pool; the last act of a shutdown. */
 export async function closeDatabase(): Promise<void> {
 	await opened?.pool.end();

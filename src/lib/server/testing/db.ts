@@ -1,7 +1,7 @@
 import { randomBytes } from 'node:crypto';
-import { migrate } from 'drizzle-orm/node-postgres/migrator';
 import pg from 'pg';
 import { openDatabase, type Database } from '../db';
+import { applyMigrations } from '../db/migrate';
 
 /**
  * A fresh, migrated database on the test cluster (TEST_DATABASE_URL, a role that may create databases).
@@ -17,7 +17,7 @@ export async function testDatabase(): Promise<{ db: Database; url: string; drop:
 	const url = new URL(server);
 	url.pathname = `/${name}`;
 	const { db, pool } = openDatabase(url.href, 20);
-	await migrate(db, { migrationsFolder: 'drizzle' });
+	await applyMigrations(db, pool);
 	return {
 		db,
 		url: url.href,
