@@ -1,4 +1,4 @@
-import { and, desc, eq, isNotNull, isNull, sql } from 'drizzle-orm';
+import { and, desc, eq, isNotNull, sql } from 'drizzle-orm';
 import type { CalculationDraft, QuestionKind } from '$lib/calculation/draft';
 import { draftSchema } from '$lib/calculation/draft-schema';
 import { newDraft } from '$lib/calculation/new-draft';
@@ -7,7 +7,9 @@ import { requireAction } from '../access/can';
 import { ConflictError, InvalidInputError, NotFoundError } from '../access/errors';
 import type { Membership } from '../access/membership';
 import { database, type Database, type Queryable } from '../db';
-import { calculations, calculationVersions, dossiers, evidence } from '../db/schema';
+import { calculations, calculationVersions, evidence } from '../db/schema';
+import { findDossier } from '../dossiers/find';
+import { touchDossier } from '../dossiers/touch';
 import { getCalculation, getVersion } from './load';
 
 /** Saves of one person within this time are one version: typing a number is not twenty versions. */
@@ -42,17 +44,7 @@ async function insert(
 	db: Database
 ): Promise<string> {
 	return db.transaction(async (tx) => {
-		const [dossier] = await tx
-			.select({ id: dossiers.id })
-			.from(dossiers)
-			.where(
-				and(
-					eq(dossiers.id, dossierId),
-					eq(dossiers.organisationId, membership.organisationId),
-					isNull(dossiers.deletedAt)
-				)
-			);
-		if (dossier === undefined) throw new NotFoundError('dossier');
+		await findDossier(tx, membership, dossierId);
 		const [row] = await tx
 			.insert(calculations)
 			.values({
@@ -67,17 +59,10 @@ async function insert(
 		await tx
 			.insert(calculationVersions)
 			.values({ calculationId: row.id, version: 1, draft, savedBy: membership.userId });
-		await touchDossier(dossierId, tx);
+		await touchDossier(tx, membership, dossierId);
 		await recordAudit(tx, membership, 'calculation.create', row.id);
 		return row.id;
 	});
-}
-
-async function touchDossier(dossierId: string, db: Queryable): Promise<void> {
-	await db
-		.update(dossiers)
-		.set({ updatedAt: sql`now()` })
-		.where(eq(dossiers.id, dossierId));
 }
 
 /** Evidence that a draft names must lie in the same dossier; a foreign id is refused as if it were not there. */
@@ -148,7 +133,7 @@ export async function saveDraft(
 			.set({ draft, title, version, updatedAt: sql`now()` })
 			.where(eq(calculations.id, id));
 		await keepVersion(id, version, draft, membership.userId, tx);
-		await touchDossier(before.dossier.id, tx);
+		await touchDossier(tx, membership, before.dossier.id);
 		return version;
 	});
 }

@@ -4,7 +4,7 @@ import { requireAction } from '../access/can';
 import { NotFoundError } from '../access/errors';
 import type { Membership } from '../access/membership';
 import { database, type Queryable } from '../db';
-import { calculations, calculationVersions, dossiers, evidence, users } from '../db/schema';
+import { calculations, calculationVersions, dossiers, users } from '../db/schema';
 
 export interface CalculationView {
 	id: string;
@@ -49,32 +49,6 @@ export async function getCalculation(
 	if (row === undefined) throw new NotFoundError('calculation');
 	const { dossierId, dossierTitle, question, ...calculation } = row;
 	return { ...calculation, dossier: { id: dossierId, title: dossierTitle, question } };
-}
-
-export interface EvidenceChoice {
-	id: string;
-	fileName: string;
-	sha256: string;
-}
-
-/** The files of a dossier that an assumption may name. */
-export async function evidenceChoices(
-	membership: Membership | null,
-	dossierId: string,
-	db: Queryable = database()
-): Promise<EvidenceChoice[]> {
-	requireAction(membership, 'dossier.read');
-	return db
-		.select({ id: evidence.id, fileName: evidence.fileName, sha256: evidence.sha256 })
-		.from(evidence)
-		.where(
-			and(
-				eq(evidence.dossierId, dossierId),
-				eq(evidence.organisationId, membership.organisationId),
-				isNull(evidence.deletedAt)
-			)
-		)
-		.orderBy(desc(evidence.uploadedAt));
 }
 
 export interface VersionView {
