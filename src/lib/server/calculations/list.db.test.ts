@@ -14,7 +14,7 @@ import { deleteDossier } from '../dossiers/delete';
 import { showDossier } from '../dossiers/show';
 import { listReports } from '../reports/list';
 import { testDatabase } from '../testing/db';
-import { member } from '../testing/people';
+import { member } from '../testing/members';
 import { listCalculations } from './list';
 
 let db: Database;

@@ -9,7 +9,7 @@ import type { Database } from '../db';
 import { auditEvents, dossiers, reports } from '../db/schema';
 import { emptyReportText } from '$lib/report/text';
 import { testDatabase } from '../testing/db';
-import { member } from '../testing/people';
+import { member } from '../testing/members';
 import { createDossier } from './create';
 import { deletedDossierTitle, deleteDossier, restoreDossier } from './delete';
 import { listDossiers } from './list';

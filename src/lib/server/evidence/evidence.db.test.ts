@@ -13,7 +13,7 @@ import { deleteDossier } from '../dossiers/delete';
 import { openDossier } from '../dossiers/show';
 import { testDatabase } from '../testing/db';
 import { smallPdf, smallPng } from '../testing/files';
-import { member } from '../testing/people';
+import { member } from '../testing/members';
 import { deletedEvidenceName, deleteEvidence, restoreEvidence } from './delete';
 import { downloadEvidence } from './download';
 import { organisationQuota } from './limits';
