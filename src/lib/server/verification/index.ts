@@ -1,0 +1,8 @@
+export {
+	examineReport,
+	maxFileBytes,
+	verifyReport,
+	type Examination,
+	type VerificationOptions
+} from './verify-report';
+export * from './types';
