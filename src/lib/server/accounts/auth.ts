@@ -95,7 +95,7 @@ const auth = SvelteKitAuth(async (event) => configuration(event));
 
 /**
  * The event as Auth.js may see it: the configured origin instead of any host or forwarding header, a path that is none
- * of its own, and a form in place of the body. `locals` and `cookies` stay the real ones.
+ * of its own, and a form in place of the body. `locals` stays the real one, and cookies set reach the answer.
  */
 function cleanEvent(event: RequestEvent, form?: Record<string, string>): RequestEvent {
 	const origin = new URL(env().ORIGIN);
@@ -109,7 +109,12 @@ function cleanEvent(event: RequestEvent, form?: Record<string, string>): Request
 		form === undefined
 			? new Request(origin, { headers })
 			: new Request(origin, { method: 'POST', headers, body: new URLSearchParams(form) });
-	return { ...event, request, url: origin };
+	// Auth.js leaves Secure out where it is not wanted, and SvelteKit would then take its own default.
+	const cookies: RequestEvent['cookies'] = {
+		...event.cookies,
+		set: (name, value, options) => event.cookies.set(name, value, { ...options, secure: isSecure() })
+	};
+	return { ...event, cookies, request, url: origin };
 }
 
 /** The signed-in person and the id of their session, or null. Renews the cookie. */

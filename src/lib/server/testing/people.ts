@@ -1,23 +1,32 @@
-import { randomUUID } from 'node:crypto';
 import type { Membership, Role } from '../access/membership';
+import type { Person } from '../accounts/person';
+import { createConfirmedAccount } from '../accounts/people';
 import type { Database } from '../db';
-import { memberships, organisations, users } from '../db/schema';
+import { memberships, organisations } from '../db/schema';
 
-/** A person of the given roles in a new organisation, or in the one of `beside`. */
-export async function member(db: Database, roles: Role[], beside?: Membership): Promise<Membership> {
-	const mark = randomUUID().slice(0, 8);
-	let organisation = beside && { id: beside.organisationId, name: beside.organisationName };
-	if (organisation === undefined) {
-		[organisation] = await db
-			.insert(organisations)
-			.values({ name: `Organisation ${mark}`, numberPrefix: 'TB' })
-			.returning({ id: organisations.id, name: organisations.name });
-	}
-	const [user] = await db
-		.insert(users)
-		.values({ name: `Person ${mark}`, email: `${mark}@people.example` })
-		.returning({ id: users.id });
-	if (organisation === undefined || user === undefined) throw new Error('The test database stored no row.');
-	await db.insert(memberships).values({ organisationId: organisation.id, userId: user.id, roles });
-	return { organisationId: organisation.id, organisationName: organisation.name, userId: user.id, roles };
+/** A password that the rules accept, for accounts of tests. */
+export const testPassword = 'umbrella kettle voyage 9';
+
+let count = 0;
+
+/** A confirmed account with a name and an address of its own. */
+export async function testPerson(db: Database, name = 'Rhea Aldous'): Promise<Person> {
+	const email = `person${++count}.${Date.now()}@test.example`;
+	return { id: await createConfirmedAccount(db, { name, email, password: testPassword }), name, email };
+}
+
+/** An organisation with one member in the given roles. */
+export async function testOrganisation(
+	db: Database,
+	person: Person,
+	roles: readonly Role[] = ['owner', 'author', 'reviewer', 'billing'],
+	name = 'Tallis Brook Consulting'
+): Promise<Membership> {
+	const [row] = await db
+		.insert(organisations)
+		.values({ name, numberPrefix: 'TB' })
+		.returning({ id: organisations.id });
+	if (row === undefined) throw new Error('The organisation was not created.');
+	await db.insert(memberships).values({ organisationId: row.id, userId: person.id, roles: [...roles] });
+	return { organisationId: row.id, organisationName: name, userId: person.id, roles };
 }

@@ -9,11 +9,11 @@ import type { Actions, PageServerLoad } from './$types';
 
 const home = '/dossiers';
 
-const notices: Readonly<Record<string, string>> = {
-	expired: 'Your session has ended. Sign in again to go on.',
-	'signed-out': 'You are signed out.',
-	'password-changed': 'Your password is changed. Sign in with the new one.',
-	confirmed: 'Your address is confirmed. Sign in to go on.'
+const notices: Readonly<Record<string, { lead: string; text: string }>> = {
+	expired: { lead: 'Your session has ended.', text: 'Sign in again to go on.' },
+	'signed-out': { lead: 'You are signed out', text: 'of this browser.' },
+	'password-changed': { lead: 'Your password is changed.', text: 'Sign in with the new one.' },
+	confirmed: { lead: 'Your address is confirmed.', text: 'Sign in to go on.' }
 };
 
 export const load: PageServerLoad = ({ locals, url }) => {
