@@ -1,5 +1,7 @@
 import { randomUUID } from 'node:crypto';
 import { hostname } from 'node:os';
+import { dirname, join } from 'node:path';
+import { fileURLToPath } from 'node:url';
 import { z } from 'zod';
 import { closeDatabase, database, databasePool } from '../lib/server/db';
 import { env } from '../lib/server/env';
@@ -8,6 +10,8 @@ import { enqueue } from '../lib/server/jobs/queue';
 import { jobDefinitions } from '../lib/server/jobs/registry';
 import { startRunner } from '../lib/server/jobs/runner';
 import { log } from '../lib/server/log';
+import { renderPreview, reportIssuing } from '../lib/server/reports/issuing';
+import { computeInThread } from './compute-in-thread';
 
 /** Time that jobs at work are given to end by themselves when the process is told to stop, milliseconds. */
 const graceMilliseconds = 20_000;
@@ -18,7 +22,12 @@ async function main(): Promise<void> {
 	env();
 	const db = database();
 	const worker = { id: randomUUID(), host: hostname(), processId: process.pid };
-	const runner = await startRunner({ db, pool: databasePool(), jobs: jobDefinitions, log, concurrency });
+	const jobs = jobDefinitions({
+		compute: computeInThread(join(dirname(fileURLToPath(import.meta.url)), 'compute-thread.js')),
+		issuing: reportIssuing,
+		preview: renderPreview
+	});
+	const runner = await startRunner({ db, pool: databasePool(), jobs, log, concurrency });
 	await beat(db, worker);
 	const heart = setInterval(() => {
 		beat(db, worker).catch((error: unknown) =>

@@ -7,6 +7,8 @@ export interface JobPayloads {
 	'compute-run': { runId: string };
 	/** Render, sign and keep the one issue of a report's revision. */
 	'issue-report': { issueId: string };
+	/** Render a draft for its author's eyes: watermarked, unsigned. */
+	'render-preview': { previewId: string };
 	/** Remove what was deleted more than thirty days ago and what has run out. */
 	'purge-deleted': Record<string, never>;
 }
@@ -26,6 +28,7 @@ export interface JobPolicy {
 export const jobPolicies: Readonly<Record<JobName, JobPolicy>> = {
 	'compute-run': { retryLimit: 3, retryDelay: 2, limitSeconds: 900 },
 	'issue-report': { retryLimit: 5, retryDelay: 2, limitSeconds: 300 },
+	'render-preview': { retryLimit: 1, retryDelay: 1, limitSeconds: 120 },
 	'purge-deleted': { retryLimit: 2, retryDelay: 60, limitSeconds: 300 }
 };
 

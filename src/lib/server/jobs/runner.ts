@@ -43,6 +43,9 @@ class ShutdownError extends Error {
  */
 export async function startRunner(options: RunnerOptions): Promise<Runner> {
 	const { db, pool, jobs, log, concurrency, pollMilliseconds = 500 } = options;
+	const homeless = jobNames.filter((name) => (jobs as Partial<JobDefinitions>)[name] === undefined);
+	if (homeless.length > 0)
+		throw new Error(`No handler for ${homeless.join(', ')}: the worker does not start.`);
 	const boss = new PgBoss({
 		db: executorOn(pool),
 		migrate: false,

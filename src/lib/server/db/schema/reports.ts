@@ -85,6 +85,30 @@ export const issues = pgTable(
 	]
 );
 
+export const previewStates = ['queued', 'rendering', 'done', 'failed'] as const;
+
+/** A watermarked, unsigned rendering of a draft, made by a worker; kept for a day. */
+export const previews = pgTable(
+	'previews',
+	{
+		id: uuid('id').primaryKey().defaultRandom(),
+		organisationId: uuid('organisation_id')
+			.notNull()
+			.references(() => organisations.id, { onDelete: 'cascade' }),
+		reportId: uuid('report_id')
+			.notNull()
+			.references(() => reports.id, { onDelete: 'cascade' }),
+		/** The report's version that it shows. */
+		version: integer('version').notNull(),
+		state: text('state', { enum: previewStates }).notNull().default('queued'),
+		problem: text('problem'),
+		model: jsonb('model').notNull(),
+		pdf: bytea('pdf'),
+		requestedAt: instant('requested_at').notNull().defaultNow()
+	},
+	(t) => [index('previews_report').on(t.reportId, t.requestedAt)]
+);
+
 /** Private keys are sealed with a key from the environment before they come here. */
 export const certificates = pgTable(
 	'certificates',

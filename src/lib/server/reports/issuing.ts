@@ -1,0 +1,63 @@
+import { eq, sql } from 'drizzle-orm';
+import type { ReportModel } from '../../report';
+import { auditEvents, reports } from '../db/schema';
+import type { ReportIssuing } from '../jobs/handlers/issue-report';
+import { PermanentJobError } from '../jobs/job';
+import { organisationSigner } from '../signing/authority';
+import { signPdf } from '../signing/sign';
+import { renderReport, UnprintableTextError } from './render';
+
+/* What the worker does for a report: see ../jobs/handlers for when. */
+
+async function rendered(work: Promise<Uint8Array>): Promise<Uint8Array> {
+	try {
+		return await work;
+	} catch (cause) {
+		// Trying again cannot give the document a letter that its typefaces lack; the author can.
+		if (cause instanceof UnprintableTextError) throw new PermanentJobError(cause.message, { cause });
+		throw cause;
+	}
+}
+
+/** The watermarked, unsigned rendering of a draft. */
+export function renderPreview(model: ReportModel): Promise<Uint8Array> {
+	return rendered(renderReport(model, { watermark: true }));
+}
+
+export const reportIssuing: ReportIssuing = {
+	render(issue) {
+		const model = issue.model as ReportModel;
+		return rendered(
+			renderReport(model, {
+				signature: {
+					name: model.organisation.name,
+					reason: `Issue of ${model.number}, revision ${model.revision}`,
+					// The model's own date, so that a second attempt renders the same bytes.
+					time: new Date(model.dates.issue ?? issue.requestedAt)
+				}
+			})
+		);
+	},
+	async sign(issue, unsigned, db) {
+		const model = issue.model as ReportModel;
+		const { certificateId, signer } = await organisationSigner(db, issue.organisationId);
+		return {
+			pdf: await signPdf(unsigned, signer),
+			certificateId,
+			issuedAt: new Date(model.dates.issue ?? issue.requestedAt)
+		};
+	},
+	async publish(issue, _signed, tx) {
+		await tx
+			.update(reports)
+			.set({ state: 'issued', updatedAt: sql`now()` })
+			.where(eq(reports.id, issue.reportId));
+		await tx.insert(auditEvents).values({
+			organisationId: issue.organisationId,
+			userId: issue.requestedBy,
+			action: 'report.issued',
+			subject: issue.reportId,
+			detail: { issue: issue.id }
+		});
+	}
+};

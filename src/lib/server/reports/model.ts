@@ -1,0 +1,116 @@
+import { and, eq, inArray } from 'drizzle-orm';
+import { methodById } from '$lib/methods';
+import { buildReportModel, type ReportModel, type ReportSource, type VerificationSource } from '$lib/report';
+import { InvalidInputError } from '../access/errors';
+import type { Membership } from '../access/membership';
+import type { Queryable } from '../db';
+import { evidence, organisations, users } from '../db/schema';
+import { runsOf, type ReportView } from './load';
+
+interface Circumstances {
+	/** Null in a preview: nothing can be verified yet. */
+	verification: VerificationSource | null;
+	issueDate: Date | null;
+	/** Who authorised the issue. */
+	authoriser: { name: string; role?: string } | null;
+}
+
+/** Evidence that the runs name, also where it was put away since: what an issued figure stands on stays listed. */
+async function evidenceOf(membership: Membership, ids: readonly string[], db: Queryable) {
+	if (ids.length === 0) return [];
+	return db
+		.select({
+			id: evidence.id,
+			fileName: evidence.fileName,
+			mediaType: evidence.mediaType,
+			size: evidence.size,
+			sha256: evidence.sha256
+		})
+		.from(evidence)
+		.where(and(inArray(evidence.id, [...ids]), eq(evidence.organisationId, membership.organisationId)))
+		.orderBy(evidence.uploadedAt);
+}
+
+/**
+ * The report as it would be printed now.
+ * @throws InvalidInputError where it reports no run.
+ */
+export async function modelOf(
+	membership: Membership,
+	report: ReportView,
+	circumstances: Circumstances,
+	db: Queryable
+): Promise<ReportModel> {
+	const loaded = await runsOf(membership, report.runIds, report.dossier.id, db);
+	if (loaded.length === 0) {
+		throw new InvalidInputError('A report needs a result.', {
+			runs: 'Choose at least one result to report.'
+		});
+	}
+	const [organisation] = await db
+		.select()
+		.from(organisations)
+		.where(eq(organisations.id, membership.organisationId));
+	const [author] =
+		report.createdBy === null
+			? []
+			: await db.select({ name: users.name }).from(users).where(eq(users.id, report.createdBy));
+	if (organisation === undefined) throw new Error('The organisation is gone.');
+	const named = loaded.flatMap(({ run }) =>
+		Object.values(run.draft.assumptions).flatMap(({ source }) => source.evidenceId ?? [])
+	);
+	const { dossier } = report;
+	const inputDates = loaded.map(({ run }) => run.createdAt.getTime());
+	const source: ReportSource = {
+		template: report.template,
+		language: 'en-GB',
+		organisation: {
+			name: organisation.name,
+			address: organisation.address,
+			registrationLine: organisation.registrationLine
+		},
+		report: {
+			number: report.number,
+			revision: report.revision,
+			state: circumstances.issueDate === null ? report.state : 'issued',
+			title: report.title,
+			text: report.text
+		},
+		addressee: dossier.client.trim() === '' ? null : { name: dossier.client, contact: dossier.clientContact },
+		scope: dossier.scope,
+		reliance: dossier.reliance,
+		projectNumber: dossier.projectNumber,
+		orderNumber: dossier.orderNumber,
+		author: { name: author?.name ?? 'a former member' },
+		authoriser: circumstances.authoriser,
+		dates: {
+			inputData: new Date(Math.max(...inputDates)).toISOString(),
+			issue: circumstances.issueDate?.toISOString() ?? null
+		},
+		verification: circumstances.verification,
+		runs: loaded.map(({ run, title }) => {
+			if (run.result === null) throw new Error('A finished run has no result.');
+			return {
+				id: run.id,
+				title,
+				draft: run.draft,
+				request: run.request,
+				result: run.result,
+				engineVersion: run.engineVersion ?? '',
+				nodeVersion: run.nodeVersion ?? '',
+				computedAt: (run.finishedAt ?? run.createdAt).toISOString()
+			};
+		}),
+		evidence: await evidenceOf(membership, named, db),
+		review: { kind: 'not-reviewed' },
+		history: [
+			{
+				revision: report.revision,
+				issuedAt: circumstances.issueDate?.toISOString() ?? null,
+				reason: ''
+			}
+		],
+		temperatureUnit: loaded[0]?.run.draft.temperatureUnit ?? 'degC'
+	};
+	return buildReportModel(source, { methodOf: methodById });
+}
