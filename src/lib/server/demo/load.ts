@@ -8,6 +8,7 @@ import { users } from '../db/schema';
 import { createOrganisation } from '../organisations/create';
 import { addMember, listMembers } from '../organisations/members';
 import { membershipsOf } from '../organisations/memberships';
+import { loadDemoWork } from './work';
 
 /** Marks the demo's people: nobody else's account is ever touched. */
 const demoMark = 'noonmark-demo';
@@ -49,6 +50,18 @@ const demoOrganisations: readonly DemoOrganisation[] = [
 			{
 				name: 'Oda Merrick',
 				email: 'oda.merrick@ferrowcourier.example',
+				roles: ['owner', 'author', 'reviewer', 'billing']
+			}
+		]
+	},
+	{
+		name: 'Idris Venn',
+		address: ['9 Harbour Steps', 'Marrow Coast'],
+		numberPrefix: 'IV',
+		people: [
+			{
+				name: 'Idris Venn',
+				email: 'idris.venn@venn.example',
 				roles: ['owner', 'author', 'reviewer', 'billing']
 			}
 		]
@@ -110,5 +123,6 @@ export async function loadDemo(db: Database, password: string): Promise<LoadedDe
 		}
 	}
 	loaded.signIns.push(...colleagues);
+	await loadDemoWork(loaded.memberships, db);
 	return loaded;
 }
