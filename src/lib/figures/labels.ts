@@ -10,6 +10,7 @@ export interface Point {
 export interface CurvePixels {
 	points: readonly Point[];
 	labelWidth: number;
+	labelHeight: number;
 }
 
 export interface LabelPlace {
@@ -24,8 +25,6 @@ interface Box {
 	top: number;
 	bottom: number;
 }
-
-const labelHeight = 11;
 
 /** Least distance from a polyline to a box, 0 where it passes through; Infinity where it does not pass over or under. */
 function verticalClearance(points: readonly Point[], box: Box): number {
@@ -66,9 +65,10 @@ function candidateAt(
 	taken: readonly Box[],
 	frame: { width: number; height: number }
 ): Candidate | undefined {
+	const { labelHeight } = own;
 	let best: Candidate | undefined;
 	for (const side of [-1, 1]) {
-		for (let gap = 3; gap <= 40; gap += 1) {
+		for (let gap = 2; gap <= 40; gap += 1) {
 			const y = centre.y + side * (gap + labelHeight / 2);
 			const half = own.labelWidth / 2;
 			const box = {
@@ -79,11 +79,11 @@ function candidateAt(
 			};
 			if (box.left < 2 || box.right > frame.width || box.top < 0 || box.bottom > frame.height - 2) continue;
 			const toOwn = verticalClearance(own.points, box);
-			if (toOwn < 3) continue;
+			if (toOwn < 2) continue;
 			const toOthers = others.reduce((d, other) => Math.min(d, verticalClearance(other.points, box)), 40);
 			const toLabels = taken.reduce((d, other) => Math.min(d, boxDistance(other, box)), 40);
 			/* A name nearer to another curve would be read as that curve's. */
-			if (toOthers < Math.max(4, toOwn + 1) || toLabels < 6) continue;
+			if (toOthers < Math.max(3, toOwn + 1) || toLabels < 6) continue;
 			const score = Math.min(toOthers, toLabels, 40) - gap;
 			if (!best || score > best.score) best = { place: { x: centre.x, y }, box, score };
 			break;
@@ -125,6 +125,7 @@ function freeCandidate(
 	taken: readonly Box[],
 	frame: { width: number; height: number }
 ): Candidate | undefined {
+	const { labelHeight } = curve;
 	const half = curve.labelWidth / 2;
 	for (let y = labelHeight; y < frame.height - labelHeight; y += 4) {
 		for (let x = frame.width - half; x > half; x -= 8) {

@@ -292,7 +292,8 @@ function curvePixels(series: Series, curve: Series['curves'][number], g: Geometr
 			x: position(g.x, x, g.width),
 			y: g.height - position(g.y, curve.values[i] ?? 0, g.height)
 		})),
-		labelWidth: g.measure(curve.name, g.fontSize) + 4
+		labelWidth: g.measure(curve.name, g.fontSize) + 4,
+		labelHeight: g.fontSize
 	};
 }
 

@@ -178,7 +178,12 @@ export interface FigureSpec {
 	series: string;
 	title: string;
 	/** The caption's first sentence: the finding, from the computed curves. */
-	finding(series: Series, outputs: Record<string, OutputResult>): string;
+	finding(
+		series: Series,
+		outputs: Record<string, OutputResult>,
+		/** A temperature in kelvin on the scale that the reader wants, one decimal, with its unit. */
+		temperature?: (kelvin: number) => string
+	): string;
 	xScale?: 'linear' | 'log';
 }
 

@@ -132,6 +132,8 @@ function numberRow(context: Context, input: NumberInput, used: InputUsed): Assum
 		isTemperatureUnit(typedUnit) && isTemperatureUnit(used.unit)
 			? convertDifference(uncertainty, used.unit, unitOfDifference(typedUnit))
 			: convertDifference(uncertainty, used.unit, typedUnit);
+	const typedSpread = draft?.spread === 'normal' ? draft.spreadValues.standardUncertainty : undefined;
+	const spreadText = typedSpread ? typedNumber(typedSpread, printed) : formatSignificant(printed, 2);
 	const spec = (request?.distribution as InputUsed['distribution']) ?? used.distribution ?? { type: 'exact' };
 	return {
 		id: input.id,
@@ -139,8 +141,7 @@ function numberRow(context: Context, input: NumberInput, used: InputUsed): Assum
 		symbol: input.symbol,
 		value: typed,
 		inOwnUnit: typedUnit === used.unit ? null : own,
-		uncertainty:
-			uncertainty > 0 ? attachUnit(formatSignificant(printed, 2), unitOfDifference(typedUnit)) : null,
+		uncertainty: uncertainty > 0 ? attachUnit(spreadText, unitOfDifference(typedUnit)) : null,
 		distribution: distributionText(spec, typedUnit, unitOfDifference(typedUnit)),
 		provenance: provenanceOf(draft, used),
 		source: sourcePhrase(context, draft, used),

@@ -64,7 +64,17 @@ function findingRow(method: NamedMethod, run: RunSource, scale: TemperatureScale
 	};
 }
 
-function buildRun(source: ReportSource, run: RunSource, method: Method, sources: SourceList): RunModel {
+/**
+ * One run, worded and rounded; the result page shows it as the report prints it.
+ * @param sources collects what its assumptions cite
+ * @throws Error where the run gave no output.
+ */
+export function buildRun(
+	source: Pick<ReportSource, 'temperatureUnit' | 'evidence'>,
+	run: RunSource,
+	method: Method,
+	sources: SourceList
+): RunModel {
 	const scale = source.temperatureUnit ?? run.draft.temperatureUnit;
 	const { result } = run;
 	const named: NamedMethod = { ...method, outputs: outputsOf(method, result) };

@@ -49,12 +49,14 @@ export const britishEnglish = {
 		`${coverage} interval ${low} to ${high}`,
 	standardUncertainty: (uncertainty: string): string => `Its standard uncertainty is ${uncertainty}.`,
 	atBestEstimates: (value: string): string =>
-		`Worked with the best estimates alone it would be ${value}; the mean of the trials differs because the method is not linear.`,
+		`At the best estimates alone the method gives ${value}; the estimate stated is the mean of the trials.`,
 
 	averagesOver: (area: Area, period: Period): string =>
 		area === 'point'
 			? `It holds for ${areas.point}, ${periods[period]}; it is not an average over an area.`
-			: `It is an average over ${areas[area]}, ${periods[period]}.`,
+			: area === 'site'
+				? `It holds for ${areas.site}, ${periods[period]}.`
+				: `It is an average over ${areas[area]}, ${periods[period]}.`,
 	kindOfTemperature: (kind: TemperatureKind): string => `It is the ${temperatureKinds[kind]}.`,
 	appliesOnly: 'It applies to the case described here and to no other.',
 

@@ -28,18 +28,18 @@ export interface PresentedOutput {
 }
 
 /**
- * Significant digits of a printed uncertainty: two where the first is 1 or 2, else one. JCGM 100:2008, 7.2.6 allows
- * up to two; a second digit behind a 3 or more would claim a better known uncertainty than the inputs give.
+ * Decimal places of a value and its standard uncertainty: the uncertainty keeps two significant digits where its
+ * first is printed as 1 or 2, else one. JCGM 100:2008, 7.2.6 allows up to two; a second digit behind a 3 or more
+ * would claim an uncertainty that is itself better known than inputs make it. Undefined without an uncertainty.
  */
-export function uncertaintyDigits(uncertainty: number): 1 | 2 {
-	const [mantissa = '9'] = uncertainty.toExponential(1).split('e');
-	return Number(mantissa) < 3 ? 2 : 1;
-}
-
-/** Decimal places of a value with a standard uncertainty, see `uncertaintyDigits`; undefined without one. */
 export function printedDecimals(uncertainty: number | undefined): number | undefined {
 	if (uncertainty === undefined || !(uncertainty > 0)) return undefined;
-	return decimalsFor(uncertainty, uncertaintyDigits(uncertainty));
+	const [two = '9.9'] = uncertainty.toExponential(1).split('e');
+	if (Number(two) < 3) return decimalsFor(uncertainty, 2);
+	const decimals = decimalsFor(uncertainty, 1);
+	/* 0.96 rounds to 1 and is then printed as 1.0. */
+	const carried = uncertainty.toExponential(0).startsWith('1');
+	return decimals === undefined ? undefined : carried ? decimals + 1 : decimals;
 }
 
 /** "95 %", "99.7 %". */

@@ -58,7 +58,11 @@ export function uncertaintyNotes(
 	if (interval) first.push([interval]);
 	if (evaluation.redrawn) first.push([words.uncertainty.redrawn(formatNumber(evaluation.redrawn, 0))]);
 	if (evaluation.converged === false) first.push([words.uncertainty.notConverged]);
-	return [joinPhrases(first), [correlationNote(method, request, words)], words.uncertainty.rounding()];
+	return [
+		joinPhrases(first),
+		joinPhrases([[correlationNote(method, request, words)], words.sharesAreOfVariance()]),
+		words.uncertainty.rounding()
+	];
 }
 
 function correlationNote(method: Pick<Method, 'inputs'>, request: ComputeRequest, words: Catalogue): string {

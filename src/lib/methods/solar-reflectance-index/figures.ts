@@ -1,7 +1,6 @@
-import { attachUnit, formatNumber } from '../../quantities';
+import { formatNumber } from '../../quantities';
+import { inKelvin } from '../in-kelvin';
 import type { FigureSpec } from '../types';
-
-const kelvin = (value: number | undefined) => attachUnit(formatNumber(value ?? NaN, 1), 'K');
 
 export const figures: readonly FigureSpec[] = [
 	{
@@ -16,18 +15,18 @@ export const figures: readonly FigureSpec[] = [
 	{
 		series: 'temperatureOverReflectance',
 		title: 'Surface temperature over solar reflectance',
-		finding(series) {
+		finding(series, _outputs, temperature = inKelvin) {
 			const low = series.curves.find(({ id }) => id === 'lowWind')?.values[0];
 			const high = series.curves.find(({ id }) => id === 'highWind')?.values[0];
-			return `Wind matters most on a dark surface: one that reflects nothing reaches ${kelvin(low)} in low and ${kelvin(high)} in high wind.`;
+			return `Wind matters most on a dark surface: one that reflects nothing reaches ${temperature(low ?? NaN)} in low and ${temperature(high ?? NaN)} in high wind.`;
 		}
 	},
 	{
 		series: 'temperatureOverConvection',
 		title: 'Surface temperature over the convection coefficient',
-		finding(series) {
+		finding(series, _outputs, temperature = inKelvin) {
 			const values = series.curves[0]?.values ?? [];
-			return `From the standard's low to its high wind the surface cools from ${kelvin(values[0])} to ${kelvin(values.at(-1))}.`;
+			return `From the standard's low to its high wind the surface cools from ${temperature(values[0] ?? NaN)} to ${temperature(values.at(-1) ?? NaN)}.`;
 		}
 	}
 ];

@@ -20,7 +20,16 @@ export function measureFigureText(text: string, fontSize: number): number {
 	return textWidth(text, fontSize, 'Noto Sans');
 }
 
-async function toSvg(spec: TopLevelSpec): Promise<string> {
+let queue: Promise<unknown> = Promise.resolve();
+
+/** One drawing at a time: the library numbers its parts in one count per process. */
+function toSvg(spec: TopLevelSpec): Promise<string> {
+	const drawing = queue.then(() => drawAlone(spec));
+	queue = drawing.catch(() => undefined);
+	return drawing;
+}
+
+async function drawAlone(spec: TopLevelSpec): Promise<string> {
 	/* Ids count on over the life of the process; starting anew keeps the bytes the same. */
 	(vega as unknown as { resetSVGDefIds: () => void }).resetSVGDefIds();
 	const view = new vega.View(vega.parse(compile(spec).spec), { renderer: 'none', logLevel: vega.Warn });

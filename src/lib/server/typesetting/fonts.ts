@@ -109,7 +109,7 @@ export function textWidth(
 }
 
 /** A character that no shipped typeface can print. */
-export class UnprintableCharacterError extends Error {
+export class UnprintableTextError extends Error {
 	readonly character: string;
 
 	constructor(character: string, context: string) {
@@ -118,7 +118,7 @@ export class UnprintableCharacterError extends Error {
 			`The character “${character}” (U+${code}) in “${context}” cannot be printed: none of the report’s typefaces has it. ` +
 				'Write it in Latin, Greek or Cyrillic letters, or leave it out.'
 		);
-		this.name = 'UnprintableCharacterError';
+		this.name = 'UnprintableTextError';
 		this.character = character;
 	}
 }
@@ -155,7 +155,7 @@ export function splitByGlyphs(text: string, family: FontFamily, style: FontStyle
 		let wanted: FontFamily = family;
 		if (!control && !main.hasGlyphForCodePoint(code)) {
 			if (!openFont('Noto Sans Math').hasGlyphForCodePoint(code)) {
-				throw new UnprintableCharacterError(character, excerpt(text, character));
+				throw new UnprintableTextError(character, excerpt(text, character));
 			}
 			wanted = 'Noto Sans Math';
 		}
