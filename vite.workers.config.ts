@@ -13,6 +13,7 @@ export default defineConfig({
 		rolldownOptions: {
 			input: {
 				worker: 'src/worker/main.ts',
+				'compute-thread': 'src/worker/compute-thread.ts',
 				migrate: 'src/worker/migrate.ts',
 				demo: 'src/worker/demo.ts'
 			},

@@ -45,7 +45,7 @@ const vite = join(root, 'node_modules', 'vite', 'bin', 'vite.js');
 
 /** @param {string[]} args */
 async function viteBuild(args) {
-	const result = await run(process.execPath, [vite, 'build', '--logLevel', 'warn', ...args], {
+	const result = await run(process.execPath, [vite, 'build', '--logLevel', 'error', ...args], {
 		cwd: root,
 		quiet: true
 	});

@@ -11,6 +11,7 @@ import { run } from './run.mjs';
  * @property {import('./secrets.mjs').Secrets} secrets
  * @property {{ web: number, smtp: number, mail: number }} ports
  * @property {string} folder for logs and mails
+ * @property {NodeJS.ProcessEnv} [inherited] the caller's environment, of `process` unless given
  * @property {boolean} [dev] Vite's development server instead of the build
  * @property {(line: string) => void} say
  * @property {(stop: () => Promise<void>) => void} onStop is given, before anything starts, what stops it all
@@ -32,7 +33,7 @@ import { run } from './run.mjs';
  * @param {ServiceOptions} options
  * @returns {NodeJS.ProcessEnv}
  */
-export function serviceEnvironment({ databaseUrl, secrets, ports, dev }) {
+export function serviceEnvironment({ databaseUrl, secrets, ports, dev, inherited = process.env }) {
 	const address = `http://127.0.0.1:${ports.web}`;
 	const made = {
 		AUTH_SECRET: secrets.AUTH_SECRET,
@@ -46,7 +47,7 @@ export function serviceEnvironment({ databaseUrl, secrets, ports, dev }) {
 	};
 	return {
 		...made,
-		...process.env,
+		...inherited,
 		NODE_ENV: dev ? 'development' : 'production',
 		DATABASE_URL: databaseUrl,
 		DEMO_PASSWORD: secrets.demoPassword,

@@ -18,20 +18,28 @@ export function openDatabase(url: string, max = 10): { db: Database; pool: pg.Po
 
 let opened: ReturnType<typeof openDatabase> | undefined;
 
+function open(): ReturnType<typeof openDatabase> {
+	if (opened === undefined) {
+		opened = openDatabase(env().DATABASE_URL);
+		// The web server says so once it has answered its last request; idle connections would keep it alive.
+		process.once('sveltekit:shutdown', () => void closeDatabase());
+	}
+	return opened;
+}
+
 /** The process's one pool on DATABASE_URL, opened at first use. */
 export function database(): Database {
-	opened ??= openDatabase(env().DATABASE_URL);
-	return opened.db;
+	return open().db;
 }
 
 /** The pool under `database()`, for the job queue, which speaks SQL of its own. */
 export function databasePool(): pg.Pool {
-	opened ??= openDatabase(env().DATABASE_URL);
-	return opened.pool;
+	return open().pool;
 }
 
 /** Ends the process's pool; the last act of a shutdown. */
 export async function closeDatabase(): Promise<void> {
-	await opened?.pool.end();
+	const closing = opened;
 	opened = undefined;
+	await closing?.pool.end();
 }

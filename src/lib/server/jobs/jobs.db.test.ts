@@ -9,6 +9,7 @@ import { PermanentJobError, type JobDefinition } from './job';
 import { LeaseLostError } from './lease';
 import { enqueue } from './queue';
 import { startRunner, type Runner } from './runner';
+import { idleJobs } from './testing/idle-jobs';
 
 let test: Awaited<ReturnType<typeof testDatabase>>;
 let connection: ReturnType<typeof openDatabase>;
@@ -28,12 +29,10 @@ afterAll(async () => {
 	await test.drop();
 });
 
-const idle = { handle: () => Promise.resolve(), abandon: () => Promise.resolve() };
-
 async function work(computeRun: JobDefinition<'compute-run'>, concurrency = 1): Promise<void> {
 	runner = await startRunner({
 		...connection,
-		jobs: { 'compute-run': computeRun, 'issue-report': idle, 'purge-deleted': idle },
+		jobs: idleJobs({ 'compute-run': computeRun }),
 		log: pino({ level: 'silent' }),
 		concurrency,
 		pollMilliseconds: 20

@@ -8,6 +8,7 @@ import { rateWindows } from '../db/schema';
 import { testDatabase } from '../testing/db';
 import { enqueue } from './queue';
 import { startRunner } from './runner';
+import { idleJobs } from './testing/idle-jobs';
 
 let test: Awaited<ReturnType<typeof testDatabase>>;
 const children: ChildProcess[] = [];
@@ -53,7 +54,7 @@ it('gives the jobs of a killed and of a frozen worker to another one within a mi
 		pool,
 		log: pino({ level: 'silent' }),
 		concurrency: 2,
-		jobs: {
+		jobs: idleJobs({
 			'compute-run': {
 				handle: async ({ runId }, context) => {
 					await context.finish(async (tx) => {
@@ -64,10 +65,8 @@ it('gives the jobs of a killed and of a frozen worker to another one within a mi
 					taken.set(context.jobId, { attempt: context.attempt, after: Date.now() - began });
 				},
 				abandon: () => Promise.resolve()
-			},
-			'issue-report': { handle: () => Promise.resolve(), abandon: () => Promise.resolve() },
-			'purge-deleted': { handle: () => Promise.resolve(), abandon: () => Promise.resolve() }
-		}
+			}
+		})
 	});
 	while (taken.size < 2 && Date.now() - began < 70_000) await sleep(100);
 

@@ -2,8 +2,8 @@ import { sql } from 'drizzle-orm';
 import pino from 'pino';
 import { openDatabase } from '../../db';
 import { rateWindows } from '../../db/schema';
-import type { JobDefinitions } from '../job';
 import { startRunner } from '../runner';
+import { idleJobs } from './idle-jobs';
 
 /*
  * A worker process for tests that kill or freeze it: takes one job, says "taken", and holds it until a line comes on
@@ -11,7 +11,7 @@ import { startRunner } from '../runner';
  */
 const { db, pool } = openDatabase(process.env.DATABASE_URL ?? '', 4);
 const say = (line: string) => process.stdout.write(`${line}\n`);
-const waiting: JobDefinitions = {
+const waiting = idleJobs({
 	'compute-run': {
 		async handle({ runId }, context) {
 			say('taken');
@@ -26,10 +26,8 @@ const waiting: JobDefinitions = {
 				);
 		},
 		abandon: () => Promise.resolve()
-	},
-	'issue-report': { handle: () => Promise.resolve(), abandon: () => Promise.resolve() },
-	'purge-deleted': { handle: () => Promise.resolve(), abandon: () => Promise.resolve() }
-};
+	}
+});
 await startRunner({
 	db,
 	pool,

@@ -1,0 +1,37 @@
+import { defineConfig } from '@playwright/test';
+
+/* `npm test -- browser` starts the whole service and says here where it is. */
+const address = process.env.E2E_ADDRESS;
+if (address === undefined) throw new Error('The browser tests need a running service: npm test -- browser');
+
+export default defineConfig({
+	testDir: 'tests/e2e',
+	testMatch: '**/*.spec.ts',
+	outputDir: 'test-results',
+	// One service and one database for all: tests keep to data of their own.
+	fullyParallel: false,
+	workers: 2,
+	retries: 0,
+	forbidOnly: true,
+	timeout: 90_000,
+	expect: { timeout: 15_000 },
+	use: {
+		baseURL: address,
+		locale: 'en-GB',
+		timezoneId: 'UTC',
+		screenshot: 'only-on-failure',
+		trace: 'retain-on-failure',
+		launchOptions: {
+			executablePath: process.env.CHROMIUM ?? '/usr/bin/chromium',
+			args: [
+				'--no-sandbox',
+				'--disable-gpu',
+				'--disable-quic',
+				'--no-first-run',
+				'--disable-background-networking',
+				'--disable-component-update',
+				'--disable-sync'
+			]
+		}
+	}
+});

@@ -1,0 +1,195 @@
+import { rmSync } from 'node:fs';
+import { dirname, join } from 'node:path';
+import { ensureBuild, ensureWorkerBuild } from './lib/build.mjs';
+import { ensureDependencies, requireNode } from './lib/dependencies.mjs';
+import { holderOf, takeLock } from './lib/lock.mjs';
+import { ensurePackages, packagesToTest } from './lib/packages.mjs';
+import { dataFolder, ensureFolder } from './lib/paths.mjs';
+import { PlainError } from './lib/plain-error.mjs';
+import { freePort } from './lib/ports.mjs';
+import { startCluster, stopCluster, throwAwayFolder } from './lib/postgres.mjs';
+import { endRunning } from './lib/run.mjs';
+import { makeSecrets } from './lib/secrets.mjs';
+import { startService } from './lib/service.mjs';
+import { checkStage, playwrightStage, programs, vitestStage } from './lib/stages.mjs';
+
+/*
+ * `npm test`: sets up everything on a throw-away database, runs every stage whatever the others say, and ends with
+ * the line "N passed, N failed". `npm test -- unit browser` runs those stages only.
+ */
+
+const began = Date.now();
+const minutes = () => `${((Date.now() - began) / 60_000).toFixed(1)} min`;
+/** @param {string} line */
+const say = (line) => console.log(`[${minutes()}] ${line}`);
+
+/** @type {(() => Promise<void> | void)[]} */
+const toStop = [];
+let ending = false;
+
+/** @param {number} code */
+async function end(code) {
+	if (ending) return;
+	ending = true;
+	endRunning();
+	for (const stop of toStop.reverse()) {
+		try {
+			await stop();
+		} catch (error) {
+			console.error(error);
+		}
+	}
+	process.exitCode = code;
+}
+
+/** @typedef {import('./lib/stages.mjs').Count} Count */
+/** @typedef {import('./lib/stages.mjs').StageContext} StageContext */
+
+/** @type {Record<string, (context: StageContext) => Promise<Count>>} */
+const stages = {
+	format: (context) => checkStage(programs.prettier, ['--check', '--log-level', 'warn', '.'], context),
+	lint: (context) => checkStage(programs.eslint, ['.'], context),
+	types: (context) =>
+		checkStage(
+			programs.svelteCheck,
+			['--tsconfig', './tsconfig.json', '--fail-on-warnings', '--output', 'human'],
+			context
+		),
+	unit: (context) => vitestStage('unit', context),
+	components: (context) => vitestStage('components', context),
+	integration: async (context) => {
+		await ensureWorkerBuild(say);
+		return await vitestStage('integration', context);
+	},
+	build: async () => {
+		await ensureBuild(say);
+		return { passed: 1, failed: 0 };
+	},
+	browser: async (context) => {
+		await ensureBuild(say);
+		const started = await startForBrowser();
+		return await playwrightStage({ ...context, env: { ...context.env, ...started } });
+	}
+};
+
+/** @type {{ url: string } | undefined} */
+let cluster;
+
+/** Without the caller's settings for a service of their own, which must not reach the tests. @returns {NodeJS.ProcessEnv} */
+function cleanEnvironment() {
+	const own =
+		/^(DATABASE_URL|PORT|HOST|ORIGIN|AUTH_SECRET|SEALING_KEYS|SMTP_URL|MAIL_.*|NOONMARK_.*|NODE_ENV)$/;
+	return Object.fromEntries(Object.entries(process.env).filter(([name]) => !own.test(name)));
+}
+
+/** The whole service on free ports, with what the browser tests are told about it. @returns {Promise<NodeJS.ProcessEnv>} */
+async function startForBrowser() {
+	if (cluster === undefined) throw new Error('There is no database.');
+	const folder = ensureFolder(join(dataFolder, `test-${process.pid}`));
+	toStop.push(() => rmSync(folder, { recursive: true, force: true }));
+	const service = await startService({
+		databaseUrl: cluster.url,
+		secrets: makeSecrets(),
+		ports: { web: await freePort(), smtp: await freePort(), mail: await freePort() },
+		inherited: cleanEnvironment(),
+		folder,
+		say,
+		onStop: (stop) => void toStop.push(stop)
+	});
+	void service.crashed.then((reason) => {
+		if (!ending) console.error(`A part of the service ended during the tests. ${reason}`);
+	});
+	return {
+		E2E_ADDRESS: service.address,
+		E2E_MAIL_READER: service.mailReader,
+		E2E_SIGN_INS: JSON.stringify(service.signIns),
+		E2E_WORKER_PROCESS: String(service.workerProcessId)
+	};
+}
+
+/** A cluster for this run alone. */
+async function startDatabase() {
+	const folder = throwAwayFolder();
+	const { databasePassword, databaseKeeperPassword } = makeSecrets();
+	toStop.push(async () => {
+		await stopCluster(folder);
+		rmSync(dirname(folder), { recursive: true, force: true });
+	});
+	cluster = await startCluster({
+		folder,
+		port: await freePort(),
+		password: databasePassword,
+		keeperPassword: databaseKeeperPassword,
+		durable: false
+	});
+}
+
+/** @param {string[]} wanted */
+async function main(wanted) {
+	const unknown = wanted.filter((name) => stages[name] === undefined);
+	if (unknown.length > 0) {
+		throw new PlainError(
+			`There is no stage ${unknown.join(', ')}. Stages: ${Object.keys(stages).join(', ')}.`
+		);
+	}
+	const chosen = wanted.length > 0 ? wanted : Object.keys(stages);
+	requireNode();
+	ensureFolder(dataFolder, true);
+	const lock = takeLock(join(dataFolder, 'test.lock'));
+	if (!lock.held)
+		throw new PlainError(
+			`The tests are already running from this folder (process ${lock.holder.processId}).`
+		);
+	toStop.push(() => lock.release());
+	if (holderOf(join(dataFolder, 'start.lock')) !== undefined) {
+		say('A copy is running from this folder; if a source has changed since, restart it after the tests.');
+	}
+	await ensurePackages(packagesToTest, say);
+	await ensureDependencies(say);
+	const reports = ensureFolder(join(dataFolder, 'test-reports'));
+	const env = cleanEnvironment();
+	if (chosen.some((name) => name === 'integration' || name === 'browser')) {
+		await startDatabase();
+		env.TEST_DATABASE_URL = cluster?.url;
+	}
+	await checkStage(programs.svelteKit, ['sync'], { env, reports });
+
+	const total = { passed: 0, failed: 0 };
+	/** @type {string[]} */
+	const summary = [];
+	for (const name of chosen) {
+		if (ending) return;
+		say(`${name} …`);
+		const from = Date.now();
+		const count = await /** @type {(context: StageContext) => Promise<Count>} */ (stages[name])({
+			env,
+			reports
+		}).catch((error) => {
+			console.error(error instanceof PlainError ? error.message : error);
+			return { passed: 0, failed: 1 };
+		});
+		total.passed += count.passed;
+		total.failed += count.failed;
+		const seconds = ((Date.now() - from) / 1000).toFixed(0);
+		summary.push(
+			`${name.padEnd(12)} ${`${count.passed} passed`.padStart(12)}, ${count.failed} failed  (${seconds} s)`
+		);
+	}
+	if (ending) return;
+	await end(total.failed === 0 ? 0 : 1);
+	console.log(`\n${summary.join('\n')}\nall in ${minutes()}`);
+	console.log(`${total.passed} passed, ${total.failed} failed`);
+}
+
+for (const signal of /** @type {const} */ (['SIGINT', 'SIGTERM', 'SIGHUP'])) {
+	process.on(signal, () => {
+		void end(130).then(() => process.exit(130));
+	});
+}
+
+main(process.argv.slice(2)).catch(async (error) => {
+	if (ending) return;
+	console.error(error instanceof PlainError ? error.message : error);
+	await end(1);
+	console.log('0 passed, 1 failed');
+});
