@@ -1,0 +1,52 @@
+import { differenceFromSi, fromSi } from '../quantities/convert';
+import { ownUnitOf } from '../calculation/check-input';
+import { numericalTolerance } from '../uncertainty/monte-carlo';
+import { normalQuantile } from '../uncertainty/special/normal';
+import { exp } from '../exact';
+import type { Caution } from '../calculation/types';
+import type { Rule } from './context';
+
+/** Standard error of the end of an equal-tailed interval read off trials, in standard uncertainties. */
+function noise(coverage: number, trials: number): number {
+	const tail = (1 - coverage) / 2;
+	const z = normalQuantile(tail);
+	const density = exp((-z * z) / 2) / 2.5066282746310002;
+	return Math.sqrt((tail * (1 - tail)) / trials) / density;
+}
+
+/**
+ * The first-order interval and that of the trials differ by more than half a unit of the second digit of the standard
+ * uncertainty (JCGM 101:2008, clause 8), and by more than the trials' own scatter.
+ */
+export const linearPropagationDoubtful: Rule = ({ checked, propagated }) => {
+	const { linear, check } = propagated;
+	if (linear === undefined || check === undefined) return [];
+	const cautions: Caution[] = [];
+	const scatter = 4 * noise(checked.evaluation.coverage, check.trials);
+	for (const { id, unit, label } of checked.model.outputs) {
+		const first = linear[id];
+		const sampled = check.outputs[id];
+		if (first === undefined || sampled === undefined || first.standardUncertainty === 0) continue;
+		const tolerance = numericalTolerance(first.standardUncertainty, 2);
+		const allowed = Math.max(tolerance, scatter * first.standardUncertainty);
+		const low = Math.abs(first.interval.low - sampled.symmetric.low);
+		const high = Math.abs(first.interval.high - sampled.symmetric.high);
+		if (low <= allowed && high <= allowed) continue;
+		const own = ownUnitOf(unit);
+		cautions.push({
+			code: 'linear-propagation-doubtful',
+			level: checked.evaluation.propagation === 'first-order' ? 'caution' : 'note',
+			text: `${label}: the linear propagation of uncertainty and the trials give different intervals. Use the trials; the shares of the uncertainty are then a guide only.`,
+			figures: {
+				linearLow: fromSi(first.interval.low, own),
+				linearHigh: fromSi(first.interval.high, own),
+				trialsLow: fromSi(sampled.symmetric.low, own),
+				trialsHigh: fromSi(sampled.symmetric.high, own),
+				tolerance: differenceFromSi(tolerance, own)
+			},
+			source: 'JCGM 101:2008, clause 8.',
+			outputs: [id]
+		});
+	}
+	return cautions;
+};
