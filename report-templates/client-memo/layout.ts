@@ -19,8 +19,8 @@ import { howSure, leftOut } from '../shared/uncertainty';
 import { figures, working } from '../shared/working';
 import { clientMemoWords } from './wording';
 
-/** A memo stays short: the first figures of each calculation. */
-const figuresPerRun = 2;
+/** A memo stays short: of each calculation the one figure that shows its answer. */
+const figuresPerRun = 1;
 
 export const template: Template = {
 	id: 'client-memo',

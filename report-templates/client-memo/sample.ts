@@ -184,7 +184,7 @@ const claim: Sample = async (context) =>
 				leftOut: 'Whether Orrin rotates, and how fast, was not looked into.'
 			}
 		},
-		addressee: { name: 'The news editor', contact: 'R. Ferrow' },
+		addressee: { name: 'Ferrow Courier, news desk', contact: 'R. Lund' },
 		orderNumber: '',
 		scope: 'The one sentence quoted, with the figures that the notice itself gives.',
 		reliance: 'Readers of the published article may rely on it as far as it is quoted in full.',

@@ -55,7 +55,12 @@ export function reviewAndSignature(kit: DocumentKit, model: ReportModel, signedA
 }
 
 export function changeHistory(kit: DocumentKit, model: ReportModel): Node[] {
-	if (model.history.length === 0) return [];
+	const [first, ...later] = model.history;
+	if (!first) return [];
+	if (later.length === 0 && first.revision === 1) {
+		const day = first.issuedAt ? dayText(first.issuedAt) : words.notIssued;
+		return [kit.heading(words.history), kit.paragraph(words.onlyIssue(day))];
+	}
 	return [
 		kit.heading(words.history),
 		dataTable(

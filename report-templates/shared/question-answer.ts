@@ -18,8 +18,7 @@ export function caution(kit: DocumentKit, row: CautionRow, fontSize = sizes.answ
 	const bar = row.level === 'note' ? colours.shade : colours.sun;
 	const wash = row.level === 'note' ? colours.shadeWash : colours.sunWash;
 	const style = { font: 'Noto Sans', fontSize } as const;
-	const source = row.source && kit.knows(row.source) ? [' ', { cite: row.source }] : [];
-	const plainSource = row.source && !kit.knows(row.source) ? ` (${row.source.replace(/\.$/, '')})` : '';
+	const cited = row.cite && kit.knows(row.cite) ? [' ', { cite: row.cite }] : [];
 	return {
 		table: {
 			widths: [textWidth - 26],
@@ -28,7 +27,7 @@ export function caution(kit: DocumentKit, row: CautionRow, fontSize = sizes.answ
 					{
 						text: [
 							...kit.runs(`${row.lead} `, { ...style, bold: true }),
-							...kit.runs([`${row.text}${plainSource}`, ...source], style)
+							...kit.runs([row.text, ...cited], style)
 						],
 						lineHeight: leading,
 						role: 'P'
@@ -44,16 +43,21 @@ export function caution(kit: DocumentKit, row: CautionRow, fontSize = sizes.answ
 			fillColor: () => wash,
 			paddingLeft: () => 12,
 			paddingRight: () => 12,
-			paddingTop: () => 7,
-			paddingBottom: () => 7
+			paddingTop: () => 5,
+			paddingBottom: () => 5
 		},
 		unbreakable: true,
-		margin: [0, 5, 0, 6]
+		margin: [0, 3, 0, 5]
 	};
 }
 
 function computed(kit: DocumentKit, run: RunModel, label: string): Node {
-	return kit.paragraph([label, ...run.headline], { fontSize: sizes.answer }, { lineHeight: leading });
+	const [first, ...rest] = run.headline;
+	const headline =
+		label && typeof first === 'string'
+			? [first.charAt(0).toLowerCase() + first.slice(1), ...rest]
+			: run.headline;
+	return kit.paragraph([label, ...headline], { fontSize: sizes.answer }, { lineHeight: leading });
 }
 
 function details(kit: DocumentKit, run: RunModel): Node[] {

@@ -54,6 +54,8 @@ export function dataTable(
 			]
 		},
 		role: 'Table',
+		/* Kept on one page with its heading. */
+		small: rows.length <= 5 && rows.flat().reduce((sum, cell) => sum + textLength(cell), 0) < 700,
 		layout: {
 			hLineWidth: (i: number, node: { table: { body: unknown[] } }) =>
 				i === 0 ? 0 : i === 1 ? 0.8 : i === node.table.body.length ? 0.5 : 0.5,

@@ -42,7 +42,13 @@ export function leftOut(kit: DocumentKit, model: ReportModel): Node[] {
 	const methods = [...new Set(model.runs.flatMap((run) => run.method.leavesOut))];
 	const deviations = [...new Set(model.runs.flatMap((run) => run.deviations))];
 	const notes = model.runs.flatMap((run) => run.cautions).filter((row) => row.level === 'note');
-	const unique = notes.filter((row, i) => notes.findIndex((other) => other.text === row.text) === i);
+	const codes = [...new Set(notes.map((row) => row.code))];
+	/* Notes of one kind stand together: their lead is said once. */
+	const grouped = codes.flatMap((code) => {
+		const rows = notes.filter((row) => row.code === code);
+		const [first] = rows;
+		return first ? [{ ...first, text: [...new Set(rows.map((row) => row.text))].join(' ') }] : [];
+	});
 	return [
 		kit.heading(words.leftOut),
 		list(kit, methods),
@@ -51,6 +57,6 @@ export function leftOut(kit: DocumentKit, model: ReportModel): Node[] {
 			: []),
 		kit.heading(words.deviations, { level: 3 }),
 		deviations.length > 0 ? list(kit, deviations) : kit.paragraph(words.noDeviations),
-		...unique.map((row) => caution(kit, row, sizes.body))
+		...grouped.map((row) => caution(kit, row, sizes.body))
 	];
 }

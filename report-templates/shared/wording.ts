@@ -87,6 +87,7 @@ export const documentWords = {
 	history: 'Change history',
 	historyTable: { revision: 'Revision', issued: 'Issued', reason: 'Reason and changes' },
 	firstIssue: 'first issue',
+	onlyIssue: (day: string) => `Revision 1, ${day}: first issue.`,
 	howToCheck: 'How to check this document',
 	checkOnline: (code: string) => [
 		'On the page ',

@@ -1,5 +1,5 @@
 /** The working as the trade writes it: each equation, the same with numbers and units put in, and its source. */
-import type { EquationRow, ReportModel } from '$lib/report';
+import type { EquationRow, FigureRow, ReportModel } from '$lib/report';
 import type { DocumentKit, Node } from '$lib/server/reports/render/kit';
 import { documentWords as words } from './wording';
 
@@ -22,7 +22,10 @@ async function equation(kit: DocumentKit, row: EquationRow): Promise<Node> {
 }
 
 export async function working(kit: DocumentKit, model: ReportModel): Promise<Node[]> {
-	const nodes: Node[] = [kit.heading(words.working), kit.paragraph(words.workingWith)];
+	const nodes: Node[] = [
+		kit.heading(words.working),
+		kit.paragraph(words.workingWith, {}, { keepWithNext: true })
+	];
 	const printed = new Set<string>();
 	for (const run of model.runs) {
 		const fresh = run.equations.filter((row) => !printed.has(`${row.tex}|${row.put ?? ''}`));
@@ -36,11 +39,13 @@ export async function working(kit: DocumentKit, model: ReportModel): Promise<Nod
 	return nodes;
 }
 
-/** Figures of all runs, at most `limit` of each. */
+/** Figures of all runs, at most `limit` of each; those that show the leading output come first. */
 export async function figures(kit: DocumentKit, model: ReportModel, limit: number): Promise<Node[]> {
 	const nodes: Node[] = [];
 	for (const run of model.runs) {
-		for (const row of run.figures.slice(0, limit)) {
+		const shows = (row: FigureRow) => row.series.curves.some((curve) => curve.id === run.leading);
+		const chosen = [...run.figures.filter(shows), ...run.figures.filter((row) => !shows(row))];
+		for (const row of chosen.slice(0, limit)) {
 			const banded = row.series.curves.some((curve) => curve.low);
 			nodes.push(
 				await kit.figure(row, {

@@ -124,7 +124,7 @@ function numberRow(context: Context, input: NumberInput, used: InputUsed): Assum
 	const typedUnit = (request?.unit as string | undefined) ?? used.unit;
 	const requested = typeof request?.value === 'number' ? request.value : undefined;
 	const value = typeof used.value === 'number' ? used.value : 0;
-	const own = attachUnit(formatSignificant(value, 10), used.unit);
+	const own = attachUnit(formatSignificant(value, requested === undefined ? 10 : 6), used.unit);
 	const typed =
 		requested === undefined ? own : attachUnit(typedNumber(draft?.value ?? '', requested), typedUnit);
 	const uncertainty = used.standardUncertainty ?? 0;

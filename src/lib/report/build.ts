@@ -64,6 +64,12 @@ function findingRow(method: NamedMethod, run: RunSource, scale: TemperatureScale
 	};
 }
 
+/** The id of a work that the method cites, or that of the words as a reference of their own. */
+function citationOf(method: Method, source: string, sources: SourceList): string {
+	const known = [...method.citations, ...wordingCitations].some((citation) => citation.id === source);
+	return known ? source : sources.add(source);
+}
+
 /**
  * One run, worded and rounded; the result page shows it as the report prints it.
  * @param sources collects what its assumptions cite
@@ -122,7 +128,8 @@ export function buildRun(
 			level: caution.level,
 			lead: cautionLead(caution),
 			text: caution.text,
-			source: caution.source ?? null
+			source: caution.source ?? null,
+			cite: caution.source ? citationOf(method, caution.source, sources) : null
 		})),
 		notes: uncertaintyNotes(method, run.request, result, leading),
 		computedAt: run.computedAt,

@@ -11,7 +11,7 @@ export function equationNumbers(result: ComputeResult): EquationNumbers {
 		input(id) {
 			const used = result.inputs[id];
 			if (!used || Array.isArray(used) || typeof used.value !== 'number') return '';
-			return texWithUnit(texSignificant(used.value, 7), used.unit);
+			return texWithUnit(texSignificant(used.value), used.unit);
 		},
 		output(id) {
 			const output = result.outputs[id];

@@ -84,7 +84,9 @@ export interface CautionRow {
 	/** Bold first words. */
 	lead: string;
 	text: string;
+	/** Where the rule comes from, in words, and the id under which the report cites it. */
 	source: string | null;
+	cite: string | null;
 }
 
 export interface FindingRow {

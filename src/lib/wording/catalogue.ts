@@ -156,7 +156,7 @@ export const britishEnglish = {
 				? `The ${coverage} coverage interval reaches ${factor} standard uncertainties to either side, from the normal distribution.`
 				: `The ${coverage} coverage interval reaches ${factor} standard uncertainties to either side, from Student’s t-distribution with ${freedom} effective degrees of freedom.`,
 		redrawn: (count: string): string =>
-			`${count} trials drew a value that is physically impossible and were drawn again; the distributions are truncated accordingly.`,
+			`Trials that drew a physically impossible value were drawn again (${count}); the distributions are truncated accordingly.`,
 		notConverged:
 			'The trials had not converged when they were stopped: the digits printed are not all earned.',
 		independent: 'The inputs were taken as independent of each other.',

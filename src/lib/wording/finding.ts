@@ -66,8 +66,16 @@ function claim(
 	} else if (finding.zetaScore !== undefined) {
 		phrases.push(words.claim.score('zeta', formatNumber(finding.zetaScore, 2)));
 	}
-	phrases.push(...finding.reasons.map((reason): Phrase => [reason]));
+	phrases.push(...remarks(finding).map((reason): Phrase => [reason]));
 	return { heading: words.claim[finding.verdict](statedText, spec.name), reasons: joinPhrases(phrases) };
+}
+
+/**
+ * What the engine says beyond the figures, which are told above: a stop's own text stands among the cautions, and the
+ * difference has been written on the reader's scale.
+ */
+function remarks(finding: ClaimFinding): string[] {
+	return finding.verdict === 'not-comparable' ? [] : finding.reasons.slice(1);
 }
 
 function convertStated(value: number, from: string, to: string): number {
@@ -99,7 +107,6 @@ function limit(
 	];
 	if (finding.limit.source) phrases.push([words.limit.source(finding.limit.source.replace(/\.$/, ''))]);
 	phrases.push([rule(finding, scale, words)], [riskSentence(finding, words)]);
-	phrases.push(...finding.reasons.map((reason): Phrase => [reason]));
 	return { heading: words.limit[finding.verdict](spec.name, limitText), reasons: joinPhrases(phrases) };
 }
 

@@ -54,10 +54,10 @@ export function probability(value: number): string {
 	return percent(value, value > 0.99 || value < 0.1 ? 3 : 2);
 }
 
-/** A share of the whole: whole per cent, "under 1 %" instead of a nought that is none. */
+/** A share of the whole: whole per cent, "< 1 %" instead of a nought that is none. */
 export function share(value: number): string {
 	if (value <= 0) return attachUnit('0', '%');
-	if (value < 0.01) return 'under ' + attachUnit('1', '%');
+	if (value < 0.01) return `<\u202f${attachUnit('1', '%')}`;
 	return attachUnit(formatNumber(value * 100, 0), '%');
 }
 

@@ -9,6 +9,8 @@ declare module 'fontkit' {
 	}
 	export interface Font {
 		unitsPerEm: number;
+		ascent: number;
+		descent: number;
 		hasGlyphForCodePoint(codePoint: number): boolean;
 		glyphForCodePoint(codePoint: number): Glyph;
 		layout(text: string): GlyphRun;

@@ -13,7 +13,7 @@ function textLength(value: unknown): number {
 }
 
 const isHeading = (node: Node | undefined): boolean =>
-	typeof node?.headlineLevel === 'number' && node.headlineLevel > 1;
+	(typeof node?.headlineLevel === 'number' && node.headlineLevel > 1) || node?.keepWithNext === true;
 
 /**
  * Joins each heading with what follows it into one block that does not break. A table may be longer than a page and
@@ -29,7 +29,7 @@ export function keepHeadings(content: readonly Node[]): Node[] {
 			if (next) kept.push(next);
 			continue;
 		}
-		const long = next?.role === 'Table' || textLength(next) > longestKept;
+		const long = next?.role === 'Table' ? next.small !== true : textLength(next) > longestKept;
 		if (!next || long) {
 			kept.push(...headings);
 			if (next) kept.push(next);
@@ -43,26 +43,16 @@ export function keepHeadings(content: readonly Node[]): Node[] {
 	return kept;
 }
 
+/** Room below which a heading before a table moves to the next page: the heading, the table's head and one row. */
+const tableStart = 96;
+
 interface PlacedNode {
 	headlineLevel?: number;
-	text?: unknown;
 	startPosition: { top: number };
 }
 
-interface NodesAround {
-	getFollowingNodesOnPage(): PlacedNode[];
-}
-
-/** Whether a heading that precedes a table has none of it on its page; foot lines and margins do not count. */
-export function headingAlone(node: PlacedNode, around: NodesAround): boolean {
+/** Whether a heading that precedes a long table stands too low on its page for the table to begin below it. */
+export function headingAlone(node: PlacedNode): boolean {
 	if (node.headlineLevel === undefined || node.headlineLevel < 2) return false;
-	return !around
-		.getFollowingNodesOnPage()
-		.some(
-			(other) =>
-				other.text !== undefined &&
-				other.headlineLevel === undefined &&
-				other.startPosition.top >= page.top &&
-				other.startPosition.top < page.height - page.bottom
-		);
+	return node.startPosition.top > page.height - page.bottom - tableStart;
 }

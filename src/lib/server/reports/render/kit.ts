@@ -86,7 +86,7 @@ export class DocumentKit {
 		return {
 			text: this.runs(phrase, { fontSize: sizes.body, ...style }),
 			lineHeight: leading,
-			margin: [0, 0, 0, 5],
+			margin: [0, 0, 0, 4],
 			role: 'P',
 			...node
 		};
@@ -109,7 +109,7 @@ export class DocumentKit {
 				(run, i) => (i === 0 && level < 3 ? { ...run, noon: options.notch ? 'notch' : 'tick' } : run)
 			),
 			lineHeight: 1.1,
-			margin: [0, level === 3 ? 5 : 10, 0, 3],
+			margin: [0, level === 3 ? 4 : 9, 0, 2],
 			headlineLevel: level,
 			role: `H${level}`,
 			...(level < 3 ? { outline: true, outlineText: text } : {}),
@@ -148,7 +148,7 @@ export class DocumentKit {
 		const number = (this.#figures += 1);
 		const spec = figureSpec(row.series, {
 			width: textWidth,
-			height: 122,
+			height: 126,
 			fontSize: 8.6,
 			measure: measureFigureText,
 			...(row.yName === null ? {} : { yName: row.yName }),

@@ -3,7 +3,7 @@
  * faults put right (each is named where it is).
  */
 import { createRequire } from 'node:module';
-import { fontTable } from '$lib/server/typesetting/fonts';
+import { fontFile, fontTable, openFont } from '$lib/server/typesetting/fonts';
 import { patchRenderer } from './renderer';
 
 const require = createRequire(import.meta.url);
@@ -32,6 +32,9 @@ export interface WrittenPage {
 
 interface EmbeddedFont {
 	font: unknown;
+	ascender: number;
+	descender: number;
+	lineGap: number;
 	id: string;
 	name: string;
 	constructor: new (document: unknown, font: unknown, id: string) => EmbeddedFont;
@@ -60,6 +63,18 @@ let library: Library | undefined;
 /** Parsed faces by file, shared by all documents of the process: reading them anew took most of the time. */
 const parsedFaces = new Map<string, { face: unknown; constructor: EmbeddedFont['constructor'] }>();
 
+const mathFace = fontFile('Noto Sans Math', 'normal');
+
+/** The fallback face is taller than the others: one borrowed character would push its line away from the next. */
+function evenHeight(font: EmbeddedFont | undefined): void {
+	if (!font) return;
+	const sans = openFont('Noto Sans');
+	const scale = 1000 / sans.unitsPerEm;
+	font.ascender = sans.ascent * scale;
+	font.descender = sans.descent * scale;
+	font.lineGap = 0;
+}
+
 function shareParsedFaces(): void {
 	const { default: PDFDocument } = require('pdfmake/js/PDFDocument.js') as { default: FontHost };
 	const original = PDFDocument.prototype.font;
@@ -79,6 +94,7 @@ function shareParsedFaces(): void {
 				const opened = this._font;
 				parsedFaces.set(src, { face: opened.font, constructor: opened.constructor });
 			}
+			if (src === mathFace) evenHeight(this._fontFamilies[src]);
 		}
 		return original.call(this, src, family, size);
 	};
