@@ -53,11 +53,17 @@ function signatureRow({ verdict, signature }: VerificationResult): CheckRow {
 	return { ...row, text: `valid; ${name}${certificate}` };
 }
 
-function timeRow({ timestamp }: VerificationResult): CheckRow {
-	const text = timestamp
-		? `${writeTime(new Date(timestamp.time))}, claimed by the signer; no time-stamp authority`
-		: 'no time stated';
-	return { id: 'time', title: 'Time', text };
+function timeRow({ timestamp, signature }: VerificationResult): CheckRow {
+	const row = { id: 'time', title: 'Time' } as const;
+	if (timestamp === null) return { ...row, text: 'none stated that could be relied on' };
+	const at = writeTime(new Date(timestamp.time));
+	return {
+		...row,
+		text:
+			signature?.valid === true
+				? `${at}, claimed by the signer; no time-stamp authority`
+				: `${at} is written in the file; nothing vouches for it`
+	};
 }
 
 function coverageRow({ signature, coverage }: VerificationResult): CheckRow {
@@ -109,11 +115,10 @@ function recordRow({ record, verdict }: VerificationResult): CheckRow {
 				: 'only what a valid signature of this service vouches for is computed again';
 		return { ...row, text: why };
 	}
-	const equal = record.figures - record.differences.length;
-	const count = `${String(equal)} of ${String(record.figures)} figures equal to the last digit`;
-	if (record.differences.length > 0)
-		return { ...row, lead: `${String(record.differences.length)} differ`, text: `; ${count}` };
-	if (!record.recomputed) return { ...row, lead: 'not fully', text: `; ${count}` };
+	const numbers = record.differences.filter(({ stored }) => typeof stored === 'number').length;
+	const count = `${String(Math.max(0, record.figures - numbers))} of ${String(record.figures)} figures equal to the last digit`;
+	if (record.differences.length > 0) return { ...row, lead: 'differs', text: `; ${count}` };
+	if (!record.recomputed) return { ...row, lead: 'not recomputed', text: '; the reason is below' };
 	return { ...row, text: count };
 }
 

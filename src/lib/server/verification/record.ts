@@ -1,6 +1,7 @@
 import { z } from 'zod';
+import type { ComputationRecord } from '../../calculation/types';
 import { recompute } from '../../record';
-import type { RecordDifference, RecordFinding, ReportIdentity } from './types';
+import type { RecordFinding, ReportIdentity } from './types';
 
 const maxRecords = 64;
 
@@ -39,38 +40,40 @@ function countTrials(attachment: ReportAttachment): number {
 	return trials.reduce((sum, n) => sum + n, 0);
 }
 
+export interface Recomputed extends RecordFinding {
+	/** A figure or word came out otherwise, or a record could not be computed at all. */
+	differs: boolean;
+	reasons: string[];
+}
+
+/** Lets other requests of the process have their turn between two blocks of trials. */
+const pause = (): Promise<void> => new Promise((resolve) => setImmediate(resolve));
+
 /**
  * Computes every record again and compares it with what it states.
  * @param maxTrials over all records; above it nothing is computed, and the reason says so.
  */
-export async function recomputeAll(
-	attachment: ReportAttachment,
-	maxTrials: number
-): Promise<RecordFinding & { reasons: string[] }> {
+export async function recomputeAll(attachment: ReportAttachment, maxTrials: number): Promise<Recomputed> {
 	const trials = countTrials(attachment);
-	const finding = {
-		recomputed: true,
-		figures: 0,
-		differences: [] as RecordDifference[],
-		reasons: [] as string[]
-	};
+	const all: Recomputed = { recomputed: true, figures: 0, differences: [], differs: false, reasons: [] };
 	if (trials > maxTrials) {
 		const reason = `The records ask for ${String(trials)} trials, more than are computed here; use the command instead.`;
-		return { ...finding, recomputed: false, reasons: [reason] };
+		return { ...all, recomputed: false, reasons: [reason] };
 	}
 	for (const [i, record] of attachment.records.entries()) {
 		try {
-			const one = await recompute(record);
-			finding.recomputed &&= one.recomputed;
-			finding.figures += one.figures;
+			// The engine checks the request by itself and compares the result as plain JSON.
+			const one = await recompute(record as unknown as ComputationRecord, { pause });
+			all.figures += one.figures;
 			for (const difference of one.differences) {
-				finding.differences.push({ ...difference, path: `/records/${String(i)}${difference.path}` });
+				all.differences.push({ ...difference, path: `/records/${String(i)}/result${difference.path}` });
 			}
+			all.differs ||= !one.recomputed;
 		} catch (error) {
-			finding.recomputed = false;
+			all.differs = true;
 			const why = error instanceof Error ? error.message : String(error);
-			finding.reasons.push(`Record ${String(i + 1)} could not be computed again: ${why}`);
+			all.reasons.push(`Record ${String(i + 1)} could not be computed again: ${why}`);
 		}
 	}
-	return finding;
+	return { ...all, recomputed: !all.differs };
 }

@@ -56,7 +56,7 @@ export interface RecordDifference {
 }
 
 export interface RecordFinding {
-	/** True where every record in the file could be computed again. */
+	/** True where every record in the file was computed again and came out exactly as stated. */
 	recomputed: boolean;
 	/** Number of figures compared. */
 	figures: number;

@@ -28,6 +28,9 @@ import {
 import { checkCms } from './cms';
 import { verifyReport, type VerificationOptions } from './verify-report';
 
+// Programs are started and keys made: a loaded machine takes its time.
+vi.setConfig({ testTimeout: 30_000 });
+
 // The engine has tests of its own, and record.test.ts runs it; here the file around the record is at stake.
 const recompute = vi.hoisted(() => vi.fn());
 vi.mock('../../record', () => ({ recompute }));
@@ -100,8 +103,8 @@ describe('a report as issued', () => {
 	}, 60_000);
 
 	it('differs where the record does not compute', async () => {
-		const difference = { path: '/result/outputs/a/value', stored: 1, recomputed: 2 };
-		recompute.mockResolvedValueOnce({ recomputed: true, figures: 14, differences: [difference] });
+		const difference = { path: '/outputs/a/value', stored: 1, recomputed: 2 };
+		recompute.mockResolvedValueOnce({ recomputed: false, figures: 14, differences: [difference] });
 		const result = await verifyReport(report, { rootPem: root });
 		expect(result.verdict).toBe('record-differs');
 		expect(result.record?.differences[0]?.path).toBe('/records/0/result/outputs/a/value');

@@ -7,7 +7,6 @@ import { identityOf, readAttachedRecord, recomputeAll, type ReportAttachment } f
 import { classifyAddition, isEncrypted, readSignedRevision } from './revision';
 import { readSignatureField, type SignatureField } from './signature-field';
 import type {
-	RecordFinding,
 	ReportIdentity,
 	SignatureFinding,
 	TimestampFinding,
@@ -127,11 +126,11 @@ const words: Record<Exclude<Verdict, 'altered' | 'unreadable' | 'not-a-report'>,
 	'record-differs': 'The attached record does not compute to the figures that it states.'
 };
 
-function decide(parts: Parts, trust: Trust, extended: boolean, record: RecordFinding | null): Verdict {
+function decide(parts: Parts, trust: Trust, extended: boolean, differs: boolean): Verdict {
 	if (parts.faults.length > 0) return 'altered';
 	if (extended) return 'extended';
 	if (trust === 'unknown') return 'issuer-unknown';
-	if ((record?.differences.length ?? 0) > 0) return 'record-differs';
+	if (differs) return 'record-differs';
 	return trust === 'trusted' ? 'genuine' : 'intact-issuer-unchecked';
 }
 
@@ -183,7 +182,7 @@ export async function examineReport(
 		figures: recomputed.figures,
 		differences: recomputed.differences
 	};
-	const verdict = decide(parts, trust, extended, record);
+	const verdict = decide(parts, trust, extended, recomputed?.differs ?? false);
 	const reasons = [
 		...(verdict === 'altered' ? parts.faults : [words[verdict as keyof typeof words]]),
 		...(extended && field.laterSignatures > 0 ? ['Another signature was added with it.'] : []),
