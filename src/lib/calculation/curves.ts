@@ -1,7 +1,7 @@
 import type { Columns, CurveFamily } from '../methods/types';
 import { Sampler } from '../uncertainty/sampler';
 import { bestEstimates, type TrialModel } from '../uncertainty/trial-model';
-import { selectRank } from './select-rank';
+import { selectRank } from '../uncertainty/select-rank';
 import type { CompiledModel } from './model';
 import type { Series } from './types';
 

@@ -80,7 +80,9 @@ describe('toRequest', () => {
 			sense: 'at-least',
 			rule: { type: 'guard-band', risk: 0.05 }
 		});
-		expect(toRequest({ ...draft, limit: { ...draft.limit, risk: '70' } }, index).faults['limit.risk']).toBeDefined();
+		expect(
+			toRequest({ ...draft, limit: { ...draft.limit, risk: '70' } }, index).faults['limit.risk']
+		).toBeDefined();
 		expect(toRequest(chooseKind(draft, 'find-value', index), index).request?.compareWith).toBeUndefined();
 	});
 
@@ -152,7 +154,10 @@ describe('choosing another method', () => {
 		const draft = answered(chooseMethod(newDraft('find-value'), sunlit), { bondAlbedo: '0.05' });
 		const before = draft.assumptions.bondAlbedo;
 		if (before === undefined) throw new Error('no albedo');
-		draft.assumptions.bondAlbedo = { ...before, source: { kind: 'judgement', text: 'dark', evidenceId: null } };
+		draft.assumptions.bondAlbedo = {
+			...before,
+			source: { kind: 'judgement', text: 'dark', evidenceId: null }
+		};
 		const other = chooseMethod(draft, method('effective-temperature'));
 		expect(other.assumptions.bondAlbedo?.value).toBe('0.05');
 		expect(Object.keys(other.assumptions).sort()).toEqual(

@@ -3,7 +3,6 @@ import { ownUnitOf } from '../calculation/check-input';
 import { numericalTolerance } from '../uncertainty/monte-carlo';
 import { normalQuantile } from '../uncertainty/special/normal';
 import { exp } from '../exact';
-import type { Caution } from '../calculation/types';
 import type { Rule } from './context';
 
 /** Standard error of the end of an equal-tailed interval read off trials, in standard uncertainties. */
@@ -21,9 +20,10 @@ function noise(coverage: number, trials: number): number {
 export const linearPropagationDoubtful: Rule = ({ checked, propagated }) => {
 	const { linear, check } = propagated;
 	if (linear === undefined || check === undefined) return [];
-	const cautions: Caution[] = [];
 	const scatter = 4 * noise(checked.evaluation.coverage, check.trials);
-	for (const { id, unit, label } of checked.model.outputs) {
+	const doubtful: string[] = [];
+	const figures: Record<string, number> = {};
+	for (const { id, unit } of checked.model.outputs) {
 		const first = linear[id];
 		const sampled = check.outputs[id];
 		if (first === undefined || sampled === undefined || first.standardUncertainty === 0) continue;
@@ -32,21 +32,23 @@ export const linearPropagationDoubtful: Rule = ({ checked, propagated }) => {
 		const low = Math.abs(first.interval.low - sampled.symmetric.low);
 		const high = Math.abs(first.interval.high - sampled.symmetric.high);
 		if (low <= allowed && high <= allowed) continue;
+		doubtful.push(id);
 		const own = ownUnitOf(unit);
-		cautions.push({
+		figures[`${id}.linearLow`] = fromSi(first.interval.low, own);
+		figures[`${id}.linearHigh`] = fromSi(first.interval.high, own);
+		figures[`${id}.trialsLow`] = fromSi(sampled.symmetric.low, own);
+		figures[`${id}.trialsHigh`] = fromSi(sampled.symmetric.high, own);
+		figures[`${id}.tolerance`] = differenceFromSi(tolerance, own);
+	}
+	if (doubtful.length === 0) return [];
+	return [
+		{
 			code: 'linear-propagation-doubtful',
 			level: checked.evaluation.propagation === 'first-order' ? 'caution' : 'note',
-			text: `${label}: the linear propagation of uncertainty and the trials give different intervals. Use the trials; the shares of the uncertainty are then a guide only.`,
-			figures: {
-				linearLow: fromSi(first.interval.low, own),
-				linearHigh: fromSi(first.interval.high, own),
-				trialsLow: fromSi(sampled.symmetric.low, own),
-				trialsHigh: fromSi(sampled.symmetric.high, own),
-				tolerance: differenceFromSi(tolerance, own)
-			},
+			text: 'The linear propagation of uncertainty and the trials give different intervals. The interval of the trials holds; the shares of the uncertainty are a guide only.',
+			figures,
 			source: 'JCGM 101:2008, clause 8.',
-			outputs: [id]
-		});
-	}
-	return cautions;
+			outputs: doubtful
+		}
+	];
 };

@@ -96,10 +96,11 @@ class Run {
 
 	outcome(trials: number, converged: boolean): MonteCarloOutcome {
 		const { coverage, interval, watch } = this.settings;
+		const tail = Math.ceil(trials * tailShare(this.settings)) + 2;
 		const outputs: Record<string, OutputStatistics> = {};
 		for (const id of this.model.outputs) {
 			const tally = this.tallies[id] as Tally;
-			const order = tally.order();
+			const order = tally.order(tail);
 			const symmetric = symmetricInterval(order, coverage);
 			outputs[id] = {
 				...tally.moments(),
@@ -139,13 +140,18 @@ function* fixed(
 	return run.outcome(trials, trials * (1 - settings.coverage) >= 9999.999);
 }
 
-function setPivots(run: Run, { coverage, interval, watch }: MonteCarloSettings, margin: number): void {
+/** Share of the trials at each end that the asked interval and the watched tail are read from. */
+function tailShare({ coverage, interval, watch }: MonteCarloSettings): number {
+	return Math.max(interval === 'shortest' ? 1 - coverage : (1 - coverage) / 2, watch?.tailShare ?? 0);
+}
+
+function setPivots(run: Run, settings: MonteCarloSettings, margin: number): void {
 	const pilot = pilotBlocks * blockSize;
-	const share = Math.max(interval === 'shortest' ? 1 - coverage : (1 - coverage) / 2, watch?.tailShare ?? 0);
+	const share = tailShare(settings);
 	const rank = Math.ceil(pilot * (share + margin * Math.sqrt((share * (1 - share)) / pilot))) + 2;
 	if (rank >= pilot / 2) return;
 	for (const tally of Object.values(run.tallies)) {
-		const order = tally.order();
+		const order = tally.order(rank);
 		tally.keepOutside({ low: order.at(rank), high: order.at(pilot + 1 - rank) });
 	}
 }

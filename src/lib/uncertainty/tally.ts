@@ -1,3 +1,5 @@
+import { selectRank } from './select-rank';
+
 /** A list of numbers that grows; plain arrays of doubles cost twice the memory. */
 class NumberList {
 	private values = new Float64Array(1024);
@@ -12,8 +14,8 @@ class NumberList {
 		return this.values;
 	}
 
-	sorted(): Float64Array {
-		return this.values.slice(0, this.length).sort();
+	copy(): Float64Array {
+		return this.values.slice(0, this.length);
 	}
 }
 
@@ -52,7 +54,7 @@ export class Tally {
 
 	/** From here on only values outside the pivots are kept; what was kept before is sifted. */
 	keepOutside(pivots: Pivots): void {
-		const before = this.lows.sorted();
+		const before = this.lows.copy();
 		this.lows.length = 0;
 		this.pivots = pivots;
 		this.keep(before, before.length);
@@ -133,10 +135,22 @@ export class Tally {
 		return { mean: this.centre + shift, standardUncertainty: Math.sqrt(Math.max(variance, 0)) };
 	}
 
-	/** The kept order statistics. */
-	order(): OrderStatistics {
-		return new OrderStatistics(this.count, this.lows.sorted(), this.highs.sorted());
+	/** The kept order statistics; of values that were all kept only `tail` at each end are put in order. */
+	order(tail = Infinity): OrderStatistics {
+		if (this.pivots === undefined && 2 * tail < this.count) {
+			const { lows, highs } = bothTails(this.lows.copy(), tail);
+			return new OrderStatistics(this.count, lows, highs);
+		}
+		return new OrderStatistics(this.count, this.lows.copy().sort(), this.highs.copy().sort());
 	}
+}
+
+/** The lowest and the highest `count` values, each in order: selection and two short sorts instead of a long one. */
+function bothTails(values: Float64Array, count: number): { lows: Float64Array; highs: Float64Array } {
+	selectRank(values, count - 1);
+	const lows = values.slice(0, count).sort();
+	selectRank(values, values.length - count);
+	return { lows, highs: values.slice(values.length - count).sort() };
 }
 
 /** Order statistics of `count` values of which the lowest and the highest are known. */
