@@ -6,6 +6,8 @@ import { defineConfig } from 'vitest/config';
 export default defineConfig({
 	plugins: [tailwindcss(), sveltekit()],
 	server: { host: '127.0.0.1' },
+	// A small font inlined as a data: address would be refused by the content security policy.
+	build: { assetsInlineLimit: 0 },
 	test: {
 		projects: [
 			{

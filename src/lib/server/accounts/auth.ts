@@ -30,6 +30,12 @@ export function sessionCookie(): string {
 	return isSecure() ? '__Host-noonmark-session' : 'noonmark-session';
 }
 
+/*
+ * Auth.js takes a lookup that fails for a session that does not exist, and clears the cookie. While the database is away
+ * nobody is signed out by that: the failure is kept here, by request, and thrown again outside.
+ */
+const failedLookups = new WeakMap<App.Locals, unknown>();
+
 const typed = z.object({ email: z.string(), password: z.string() });
 
 function configuration(event: RequestEvent): SvelteKitAuthConfig {
@@ -64,7 +70,10 @@ function configuration(event: RequestEvent): SvelteKitAuthConfig {
 			decode: async (params) => {
 				if (params.salt !== cookie) return stockDecode(params);
 				if (params.token === undefined) return null;
-				const person = await findSession(params.token);
+				const person = await findSession(params.token).catch((cause: unknown) => {
+					failedLookups.set(event.locals, cause);
+					return null;
+				});
 				if (person === null) return null;
 				return { sub: person.id, name: person.name, email: person.email, kept: params.token };
 			}
@@ -109,10 +118,14 @@ function cleanEvent(event: RequestEvent, form?: Record<string, string>): Request
 		form === undefined
 			? new Request(origin, { headers })
 			: new Request(origin, { method: 'POST', headers, body: new URLSearchParams(form) });
-	// Auth.js leaves Secure out where it is not wanted, and SvelteKit would then take its own default.
 	const cookies: RequestEvent['cookies'] = {
 		...event.cookies,
-		set: (name, value, options) => event.cookies.set(name, value, { ...options, secure: isSecure() })
+		set: (name, value, options) => {
+			// Where to go afterwards is our forms' business, not a cookie's.
+			if (name.endsWith('authjs.callback-url')) return;
+			// Auth.js leaves Secure out where it is not wanted, and SvelteKit would then take its own default.
+			event.cookies.set(name, value, { ...options, secure: isSecure() });
+		}
 	};
 	return { ...event, cookies, request, url: origin };
 }
@@ -126,6 +139,7 @@ export async function readSession(
 	const clean = cleanEvent(event);
 	await auth.handle({ event: clean, resolve: () => new Response() });
 	const session = await event.locals.auth();
+	if (failedLookups.has(event.locals)) throw failedLookups.get(event.locals);
 	const user = session?.user;
 	if (!user?.id) return null;
 	return {

@@ -1,4 +1,4 @@
-import { redirect, type Handle } from '@sveltejs/kit';
+import { redirect, type Handle, type RequestEvent } from '@sveltejs/kit';
 
 /** Pages of a signed-in person that need no organisation yet. */
 const withoutOrganisation = new Set(['/(app)/organisation/new', '/(app)/account']);
@@ -11,7 +11,7 @@ export const guard: Handle = async ({ event, resolve }) => {
 	const { locals, route, url, request } = event;
 	if (!route.id?.startsWith('/(app)')) return resolve(event);
 	if (locals.person === null) {
-		if (request.headers.get('accept')?.includes('text/html') !== true && !event.isDataRequest) {
+		if (!isForPage(event)) {
 			return Response.json({ message: 'Please sign in again.' }, { status: 401 });
 		}
 		// Back to the page, not to one of its actions.
@@ -25,3 +25,12 @@ export const guard: Handle = async ({ event, resolve }) => {
 	}
 	return resolve(event);
 };
+
+/** A page, its data or one of its forms, rather than an endpoint called by a script: it can show the way to sign in. */
+function isForPage({ request: { headers }, isDataRequest }: RequestEvent): boolean {
+	return (
+		isDataRequest ||
+		headers.get('x-sveltekit-action') === 'true' ||
+		headers.get('accept')?.includes('text/html') === true
+	);
+}
