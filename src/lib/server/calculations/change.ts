@@ -227,3 +227,23 @@ export async function restoreCalculation(
 	if (restored.length === 0) throw new NotFoundError('calculation');
 	await recordAudit(db, membership, 'calculation.restore', id);
 }
+
+/** Title of a calculation that was put away, for the notice that offers to bring it back; undefined for any other. */
+export async function deletedCalculationTitle(
+	membership: Membership | null,
+	id: string,
+	db: Queryable = database()
+): Promise<string | undefined> {
+	requireAction(membership, 'calculation.read');
+	const [row] = await db
+		.select({ title: calculations.title })
+		.from(calculations)
+		.where(
+			and(
+				eq(calculations.id, id),
+				eq(calculations.organisationId, membership.organisationId),
+				isNotNull(calculations.deletedAt)
+			)
+		);
+	return row?.title;
+}

@@ -1,7 +1,6 @@
 import { eq, sql } from 'drizzle-orm';
-import { engineVersion } from '$lib/calculation/engine-version';
 import type { ComputeRequest, ComputeResult } from '$lib/calculation/types';
-import { canonicalJson } from '$lib/record';
+import { canonicalJson, engineVersion } from '$lib/record';
 import type { Queryable } from '../db';
 import { runs } from '../db/schema';
 

@@ -28,7 +28,10 @@ export async function answerOf(draft: CalculationDraft): Promise<AnswerView | nu
 	const { request, faults } = toRequest(draft, method);
 	if (request === null) return emptyAnswer(draft, method, faults);
 	try {
-		return answerView(draft, method, await compute(small(request)));
+		const result = await compute(small(request));
+		// The preview's few trials are its own doing, not the author's.
+		const cautions = result.cautions.filter(({ code }) => code !== 'not-converged');
+		return answerView(draft, method, { ...result, cautions });
 	} catch (cause) {
 		if (cause instanceof ProblemError) {
 			return emptyAnswer(draft, method, { [fieldOfProblem(cause)]: cause.message });

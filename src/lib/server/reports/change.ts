@@ -173,6 +173,26 @@ export async function deleteReport(
 	return { number: report.number, dossierId: report.dossier.id };
 }
 
+/** Number of a report that was put away, for the notice that offers to bring it back; undefined for any other. */
+export async function deletedReportNumber(
+	membership: Membership | null,
+	id: string,
+	db: Queryable = database()
+): Promise<string | undefined> {
+	requireAction(membership, 'report.read');
+	const [row] = await db
+		.select({ number: reports.number })
+		.from(reports)
+		.where(
+			and(
+				eq(reports.id, id),
+				eq(reports.organisationId, membership.organisationId),
+				isNotNull(reports.deletedAt)
+			)
+		);
+	return row?.number;
+}
+
 /** Undoes a deletion. */
 export async function restoreReport(
 	membership: Membership | null,

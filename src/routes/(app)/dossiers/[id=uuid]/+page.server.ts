@@ -1,5 +1,6 @@
 import { error, fail, redirect } from '@sveltejs/kit';
 import { can } from '$lib/server/access/can';
+import { deletedCalculationTitle } from '$lib/server/calculations/change';
 import { deleteDossier } from '$lib/server/dossiers/delete';
 import { showDossier } from '$lib/server/dossiers/show';
 import { deletedEvidenceName, deleteEvidence, restoreEvidence } from '$lib/server/evidence/delete';
@@ -8,16 +9,21 @@ import { uploadEvidence } from '$lib/server/evidence/upload';
 import { orHttpError } from '$lib/server/http/errors';
 import { orFormFault } from '$lib/server/http/forms';
 import { idIn } from '$lib/server/http/ids';
+import { deletedReportNumber } from '$lib/server/reports/change';
 import { answerInBrief, methodTitle } from '$lib/wording/answer-in-brief';
 import type { Actions, PageServerLoad } from './$types';
 
 export const load: PageServerLoad = async ({ locals, params, url }) => {
 	const { membership } = locals;
 	const deletedFile = idIn(url.searchParams, 'deleted-file');
-	const [page, fileName] = await orHttpError(
+	const deletedCalculation = idIn(url.searchParams, 'deleted-calculation');
+	const deletedReport = idIn(url.searchParams, 'deleted-report');
+	const [page, fileName, calculationTitle, reportNumber] = await orHttpError(
 		Promise.all([
 			showDossier(membership, params.id),
-			deletedFile === undefined ? undefined : deletedEvidenceName(membership, deletedFile)
+			deletedFile === undefined ? undefined : deletedEvidenceName(membership, deletedFile),
+			deletedCalculation === undefined ? undefined : deletedCalculationTitle(membership, deletedCalculation),
+			deletedReport === undefined ? undefined : deletedReportNumber(membership, deletedReport)
 		])
 	);
 	const { dossier, calculations, reports, evidence } = page;
@@ -46,6 +52,9 @@ export const load: PageServerLoad = async ({ locals, params, url }) => {
 		})),
 		reportsInAll: reports.total,
 		evidence,
+		deletedCalculation:
+			deletedCalculation && calculationTitle ? { id: deletedCalculation, title: calculationTitle } : null,
+		deletedReport: deletedReport && reportNumber ? { id: deletedReport, number: reportNumber } : null,
 		deletedFile: deletedFile && fileName ? { id: deletedFile, fileName } : null,
 		may: {
 			edit: can(membership, 'dossier.write'),

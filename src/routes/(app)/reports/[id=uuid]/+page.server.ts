@@ -2,7 +2,7 @@ import { redirect } from '@sveltejs/kit';
 import { can } from '$lib/server/access/can';
 import { orHttpError } from '$lib/server/http/errors';
 import { orFormFault, typedValues } from '$lib/server/http/forms';
-import { deleteReport, saveReport } from '$lib/server/reports/change';
+import { deleteReport, restoreReport, saveReport } from '$lib/server/reports/change';
 import { dutiesOf, issueOf } from '$lib/server/reports/issue';
 import { getReport, runChoices } from '$lib/server/reports/load';
 import { requestPreview } from '$lib/server/reports/preview';
@@ -63,6 +63,10 @@ export const actions: Actions = {
 	},
 	delete: async ({ locals, params }) => {
 		const { dossierId } = await orHttpError(deleteReport(locals.membership, params.id));
-		redirect(303, `/dossiers/${dossierId}?deletedReport=${params.id}`);
+		redirect(303, `/dossiers/${dossierId}?deleted-report=${params.id}#reports`);
+	},
+	undo: async ({ locals, params }) => {
+		await orHttpError(restoreReport(locals.membership, params.id));
+		redirect(303, `/reports/${params.id}`);
 	}
 };
