@@ -13,6 +13,7 @@ import {
 	BasicConstraintsExtension,
 	KeyUsageFlags,
 	KeyUsagesExtension,
+	Name,
 	SubjectKeyIdentifierExtension,
 	X509Certificate,
 	X509CertificateGenerator,
@@ -117,10 +118,10 @@ export async function issueCertificate(
 ): Promise<Issued> {
 	const keys = await crypto.subtle.generateKey(algorithm, true, ['sign', 'verify']);
 	// As UTF8String objects: as plain text the library reads quotation marks and # as syntax.
-	const subject = [
+	const subject = new Name([
 		{ O: [{ utf8String: cleanName(names.organisation) }] },
 		{ CN: [{ utf8String: cleanName(names.commonName) }] }
-	];
+	]);
 	const parent = issuer && new X509Certificate(Uint8Array.from(issuer.der));
 	const issuerKeys = issuer === undefined ? keys : await importPair(issuer.privateKey);
 	const notBefore = new Date(Math.floor(at.getTime() / 1000) * 1000);

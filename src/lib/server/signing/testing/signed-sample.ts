@@ -60,13 +60,14 @@ export function unsignedSample(options: SampleOptions = {}): Promise<Buffer> {
 	doc.fontSize(12);
 	for (const line of options.lines ?? ['The sunlit mean is -24.2 degC.']) doc.text(line);
 	if (options.record !== undefined) {
-		doc.file(Buffer.from(options.record), {
+		const attachment = {
 			name: 'record.json',
 			type: 'application/json',
 			creationDate: at,
 			modifiedDate: at,
 			relationship: 'Data'
-		});
+		};
+		doc.file(Buffer.from(options.record), attachment);
 	}
 	if (options.field !== null) {
 		const inner = doc as unknown as PdfKitDocument & {
