@@ -149,7 +149,7 @@ export async function readSession(
 }
 
 /** Auth.js answers by a thrown redirect and wraps what its callbacks throw; this undoes both. */
-async function settle(work: Promise<void>): Promise<void> {
+async function settle(work: unknown): Promise<void> {
 	try {
 		await work;
 	} catch (thrown) {

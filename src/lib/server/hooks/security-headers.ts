@@ -11,12 +11,12 @@ const strictPolicy = [
 	"frame-ancestors 'none'"
 ].join('; ');
 
-/** A PDF is drawn by the browser's own viewer, which must load itself; our pages may show one in a frame. */
+/** A PDF is drawn by the browser's own viewer, which styles itself; our pages may show one in a frame. */
 const pdfPolicy = [
 	"default-src 'none'",
 	"base-uri 'none'",
 	"form-action 'none'",
-	"object-src 'self'",
+	"object-src 'none'",
 	"style-src 'unsafe-inline'",
 	"img-src 'self' data:",
 	"frame-ancestors 'self'"
