@@ -1,4 +1,4 @@
-import { existsSync, statSync } from 'node:fs';
+import { existsSync, rmSync, statSync } from 'node:fs';
 import { join } from 'node:path';
 import { root } from './paths.mjs';
 import { PlainError } from './plain-error.mjs';
@@ -30,6 +30,8 @@ export async function ensureDependencies(say) {
 		quiet: true
 	});
 	if (result.code !== 0) {
+		// Half an installation must not pass for a whole one at the next start.
+		rmSync(installed, { force: true });
 		throw new PlainError(`npm ci failed. Mend what it says and start again.\n${result.output.trim()}`);
 	}
 }
