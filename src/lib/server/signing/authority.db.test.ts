@@ -61,6 +61,16 @@ describe('authority', () => {
 		expect(Date.parse(l.validTo)).toBeLessThan(Date.parse(i.validTo));
 	});
 
+	it('makes certificates that hold for a report whose issue was asked for just before', async () => {
+		const asked = Date.now() - 3_600_000;
+		const organisationId = await newOrganisation('Made at first use');
+		const { root, issuing } = await ensureAuthority(db);
+		const leaf = await ensureOrganisationCertificate(db, organisationId);
+		for (const { pem } of [root, issuing, leaf]) {
+			expect(Date.parse(new X509Certificate(pem).validFrom)).toBeLessThan(asked);
+		}
+	});
+
 	it('keeps no private key in the clear', async () => {
 		for (const row of await db.select().from(certificates)) {
 			expect(row.sealedKey).toMatch(/^v1\.test\./);

@@ -105,10 +105,16 @@ async function importPair(privateKey: Buffer): Promise<{ privateKey: CryptoKey; 
 }
 
 /**
+ * A certificate starts a day before it is made. A report's time is that of the request to issue it, and the
+ * organisation's first certificate is made only when a worker comes to sign; clocks of two machines also differ.
+ */
+const backdatedMs = 86_400_000;
+
+/**
  * A new P-256 key and a certificate for it, signed by the issuer, or by itself where there is none (a root).
  *
  * @param names common name and organisation; both are cut to 64 characters.
- * @param at start of the validity, cut to the second; the end never lies behind the issuer's.
+ * @param at when it is made; the end of the validity never lies behind the issuer's.
  */
 export async function issueCertificate(
 	kind: CertificateKind,
@@ -124,7 +130,7 @@ export async function issueCertificate(
 	]);
 	const parent = issuer && new X509Certificate(Uint8Array.from(issuer.der));
 	const issuerKeys = issuer === undefined ? keys : await importPair(issuer.privateKey);
-	const notBefore = new Date(Math.floor(at.getTime() / 1000) * 1000);
+	const notBefore = new Date(Math.floor((at.getTime() - backdatedMs) / 1000) * 1000);
 	const notAfter = addYears(notBefore, years[kind]);
 	const certificate = await X509CertificateGenerator.create({
 		serialNumber: newSerial(),

@@ -187,6 +187,11 @@ export async function examineReport(
 		...(verdict === 'altered' ? parts.faults : [words[verdict as keyof typeof words]]),
 		...(extended && field.laterSignatures > 0 ? ['Another signature was added with it.'] : []),
 		...time.faults,
+		...(recomputed?.recomputed && recomputed.figures > 0
+			? [
+					`All ${String(recomputed.figures)} figures of the record were computed again and are equal to the last digit.`
+				]
+			: []),
 		...(recomputed?.reasons ?? []),
 		...(time.timestamp
 			? ['The time is only claimed by the signer; no time-stamp authority vouches for it.']

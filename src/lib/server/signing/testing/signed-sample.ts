@@ -12,17 +12,16 @@ export interface TestAuthority {
 	signer: Signer;
 }
 
-/** Root, issuing and organisation certificates, valid from a day before `at`. */
+/** Root, issuing and organisation certificates made at `at`. */
 export async function testAuthority(
 	name = 'Tallis Brook Consulting',
 	at = new Date()
 ): Promise<TestAuthority> {
-	const from = new Date(at.getTime() - 86_400_000);
 	const service = (commonName: string) => ({ commonName, organisation: 'Noonmark' });
-	const root = await issueCertificate('root', service('Noonmark Root'), from);
-	const issuing = await issueCertificate('issuing', service('Noonmark Issuing'), from, root);
+	const root = await issueCertificate('root', service('Noonmark Root'), at);
+	const issuing = await issueCertificate('issuing', service('Noonmark Issuing'), at, root);
 	const names = { commonName: name, organisation: name };
-	const organisation = await issueCertificate('organisation', names, from, issuing);
+	const organisation = await issueCertificate('organisation', names, at, issuing);
 	return {
 		root,
 		issuing,
