@@ -4,7 +4,7 @@ import { figureSpec, figureTable, type FigureColumn } from '$lib/figures';
 import { methodById } from '$lib/methods';
 import { nominalSolarIrradiance } from '$lib/methods/constants';
 import { formatNumber } from '$lib/quantities';
-import { intervalLine, wordedOutputs } from '$lib/wording';
+import { intervalLine, presentOutput, wordedOutputs } from '$lib/wording';
 import { drawForPage, measureFigureText } from '../figures/draw';
 
 /** The worked example of the front page. The body and the notice are invented; every figure is computed here. */
@@ -18,10 +18,12 @@ export interface WorkedExample {
 		id: string;
 		label: string;
 		value: string;
+		/** The same on the scale of the figure. */
+		kelvin: string;
 		uncertainty: string | undefined;
 		interval: string | undefined;
 	}[];
-	figure: { svg: string; finding: string; table: FigureColumn[] };
+	figure: { svg: string; svgNarrow: string; finding: string; table: FigureColumn[] };
 	record: string;
 }
 
@@ -36,7 +38,9 @@ function request(): ComputeRequest {
 			irradiance: { value: irradiance, unit: 'W/m^2' },
 			bondAlbedo: { value: 0.05, distribution: { type: 'normal', standardUncertainty: 0.01 } },
 			emissivity: { value: 0.95 }
-		}
+		},
+		// Enough for the digits shown; a page must not wait for more.
+		evaluation: { trials: 20_000 }
 	};
 }
 
@@ -50,13 +54,19 @@ async function work(): Promise<WorkedExample> {
 		throw new Error('The example’s method gives no curve to draw.');
 	}
 	const finding = figure.finding(series, result.outputs);
-	const spec = figureSpec(series, { width: 620, height: 230, measure: measureFigureText });
+	const draw = (width: number, height: number) =>
+		drawForPage(figureSpec(series, { width, height, measure: measureFigureText }), finding);
 	const given = (id: string, decimals: number): string => {
 		const used = result.inputs[id];
 		if (used === undefined || Array.isArray(used) || typeof used.value !== 'number') {
 			throw new Error(`The example’s result does not list the input ${id}.`);
 		}
 		return formatNumber(used.value, decimals);
+	};
+	const outputOf = (id: string) => {
+		const output = result.outputs[id];
+		if (output === undefined) throw new Error(`The example’s result lacks the output ${id}.`);
+		return output;
 	};
 	const albedo = result.inputs.bondAlbedo;
 	return {
@@ -69,10 +79,17 @@ async function work(): Promise<WorkedExample> {
 			id: output.id,
 			label: output.label,
 			value: presented.estimate,
+			kelvin: presentOutput(outputOf(output.id), output, 'K').estimate,
 			uncertainty: presented.uncertainty,
 			interval: intervalLine(presented, { scale: 'degC' })
 		})),
-		figure: { svg: await drawForPage(spec, finding), finding, table: figureTable(series) },
+		// One after the other: the drawing library numbers its parts in one count per process.
+		figure: {
+			svg: await draw(620, 230),
+			svgNarrow: await draw(310, 200),
+			finding,
+			table: figureTable(series)
+		},
 		record: result.record
 	};
 }
