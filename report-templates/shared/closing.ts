@@ -162,7 +162,7 @@ export function notices(kit: DocumentKit, model: ReportModel): Node[] {
 
 /** Works in order of citation; called last, when all have been cited. */
 export function references(kit: DocumentKit): Node[] {
-	const style = { font: 'Noto Sans', fontSize: sizes.table } as const;
+	const style = { font: 'Noto Sans', fontSize: sizes.small } as const;
 	if (kit.cited.length === 0) return [];
 	return [
 		kit.heading(words.references),

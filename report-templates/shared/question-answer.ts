@@ -18,7 +18,8 @@ export function caution(kit: DocumentKit, row: CautionRow, fontSize = sizes.answ
 	const bar = row.level === 'note' ? colours.shade : colours.sun;
 	const wash = row.level === 'note' ? colours.shadeWash : colours.sunWash;
 	const style = { font: 'Noto Sans', fontSize } as const;
-	const cited = row.cite && kit.knows(row.cite) ? [' ', { cite: row.cite }] : [];
+	const cited = row.cite && kit.knows(row.cite) ? [' ', { cite: row.cite }, '.'] : [];
+	const text = cited.length > 0 ? row.text.replace(/\.$/, '') : row.text;
 	return {
 		table: {
 			widths: [textWidth - 26],
@@ -27,7 +28,7 @@ export function caution(kit: DocumentKit, row: CautionRow, fontSize = sizes.answ
 					{
 						text: [
 							...kit.runs(`${row.lead} `, { ...style, bold: true }),
-							...kit.runs([row.text, ...cited], style)
+							...kit.runs([text, ...cited], style)
 						],
 						lineHeight: leading,
 						role: 'P'

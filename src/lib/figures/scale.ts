@@ -32,6 +32,9 @@ function roundStep(span: number, count: number): { step: number; decimals: numbe
 	return { step: 10 * powerOfTen(exponent), decimals: Math.max(0, -exponent - 1) };
 }
 
+/** A span below this is none: no figure shows anything so small. */
+const smallest = 1e-12;
+
 /**
  * An axis over the given numbers. `round` widens the ends to the next tick; without it the ends are the data's own,
  * as suits the axis that a curve is drawn over. Flat data gets an axis of one unit around it.
@@ -41,8 +44,9 @@ export function axisScale(values: readonly number[], options: { ticks: number; r
 	let low = finite.reduce((a, b) => Math.min(a, b), Infinity);
 	let high = finite.reduce((a, b) => Math.max(a, b), -Infinity);
 	if (finite.length === 0) [low, high] = [0, 1];
-	if (high - low <= Math.abs(high) * 1e-12) {
-		const margin = high === 0 ? 1 : Math.abs(high) * 0.05;
+	const size = Math.max(Math.abs(low), Math.abs(high));
+	if (high - low <= Math.max(size * 1e-12, smallest)) {
+		const margin = size <= smallest ? 1 : size * 0.05;
 		low -= margin;
 		high += margin;
 	}

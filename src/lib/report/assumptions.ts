@@ -61,9 +61,9 @@ function provenanceOf(draft: AssumptionDraft | undefined, used: InputUsed): Prov
 
 /** Where a default comes from: a work that the method cites, or words. */
 function defaultSource(context: Context, source: string | undefined): Phrase {
-	const known = context.method.citations.some((citation) => citation.id === source);
 	if (!source) return ['method’s default'];
-	return known ? ['method’s default ', cite(source)] : [`method’s default: ${source.replace(/\.$/, '')}`];
+	const known = context.method.citations.find(({ id, text }) => id === source || text === source);
+	return known ? ['method’s default ', cite(known.id)] : [`method’s default: ${source.replace(/\.$/, '')}`];
 }
 
 function fileSource(context: Context, draft: AssumptionDraft): Phrase {

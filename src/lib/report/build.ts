@@ -66,8 +66,10 @@ function findingRow(method: NamedMethod, run: RunSource, scale: TemperatureScale
 
 /** The id of a work that the method cites, or that of the words as a reference of their own. */
 function citationOf(method: Method, source: string, sources: SourceList): string {
-	const known = [...method.citations, ...wordingCitations].some((citation) => citation.id === source);
-	return known ? source : sources.add(source);
+	const known = [...method.citations, ...wordingCitations].find(
+		({ id, text }) => id === source || text === source
+	);
+	return known?.id ?? sources.add(source);
 }
 
 /**

@@ -4,6 +4,8 @@ import { page, type Node } from './kit';
 /** Longest text that is kept on one page with its heading; more might not fit on any page. */
 const longestKept = 1200;
 
+const longestList = 500;
+
 function textLength(value: unknown): number {
 	if (typeof value === 'string') return value.length;
 	if (Array.isArray(value)) return value.reduce<number>((sum, item) => sum + textLength(item), 0);
@@ -29,7 +31,10 @@ export function keepHeadings(content: readonly Node[]): Node[] {
 			if (next) kept.push(next);
 			continue;
 		}
-		const long = next?.role === 'Table' ? next.small !== true : textLength(next) > longestKept;
+		const long =
+			next?.role === 'Table'
+				? next.small !== true
+				: textLength(next) > (next?.role === 'L' ? longestList : longestKept);
 		if (!next || long) {
 			kept.push(...headings);
 			if (next) kept.push(next);

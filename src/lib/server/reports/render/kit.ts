@@ -22,8 +22,8 @@ export const page = {
 	height: 841.89,
 	left: 80,
 	right: 52,
-	top: 58,
-	bottom: 62,
+	top: 56,
+	bottom: 58,
 	/** Where the noon line stands. */
 	line: 54
 };
@@ -32,7 +32,7 @@ export const textWidth = page.width - page.left - page.right;
 
 export const sizes = {
 	title: 19,
-	heading: 12,
+	heading: 11.6,
 	subheading: 10.5,
 	answer: 12,
 	body: 9.8,
@@ -41,7 +41,7 @@ export const sizes = {
 };
 
 /** Line height over the face's own, which is generous already. */
-export const leading = 1.08;
+export const leading = 1.04;
 
 export const colours = palette;
 
@@ -83,8 +83,11 @@ export class DocumentKit {
 	}
 
 	paragraph(phrase: Phrase | string, style: RunStyle = {}, node: Node = {}): Node {
+		const text = this.runs(phrase, { fontSize: sizes.body, ...style });
 		return {
-			text: this.runs(phrase, { fontSize: sizes.body, ...style }),
+			text,
+			/* The layout library knows no widows: a short paragraph is not broken at all. */
+			unbreakable: text.reduce((sum, run) => sum + run.text.length, 0) < 450,
 			lineHeight: leading,
 			margin: [0, 0, 0, 4],
 			role: 'P',
@@ -139,6 +142,7 @@ export class DocumentKit {
 				}
 			],
 			margin: [0, 3, 0, 3],
+			role: 'P',
 			unbreakable: true
 		};
 	}

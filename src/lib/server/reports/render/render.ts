@@ -7,6 +7,9 @@ import { colours, DocumentKit, page, sizes, type Node } from './kit';
 import { layoutLibrary, type WrittenDocument, type WrittenPage } from './library';
 import { headingAlone, keepHeadings } from './keep-together';
 import { repairMetadata } from './metadata';
+import { structureState } from './renderer';
+import { buildStructure, element, type Structure } from './structure';
+import { writeStructure } from './structure-writer';
 
 export interface SignatureRequest {
 	/** Who signs: the organisation's name. */
@@ -43,15 +46,23 @@ interface Placed extends WrittenDocument {
 	signaturePlace?: { page: WrittenPage; left: number; top: number; right: number; bottom: number };
 }
 
-function placeSignature(doc: Placed, model: ReportModel, signature: SignatureRequest): void {
+function placeSignature(
+	doc: Placed,
+	model: ReportModel,
+	signature: SignatureRequest,
+	structure: Structure
+): void {
 	const place = doc.signaturePlace;
 	if (!place) throw new Error('The template leaves no place for the signature.');
 	const pdf = doc as unknown as PdfKitDocument;
-	addSignatureField(pdf, {
+	const tooltip = words.signatureTooltip(model.organisation.name);
+	const form = element('Form', structure.signatureParent, { alt: tooltip });
+	const { widget } = addSignatureField(pdf, {
 		name: signature.name,
 		reason: signature.reason,
 		signedAt: signature.time,
-		tooltip: words.signatureTooltip(model.organisation.name),
+		tooltip,
+		structParent: structureState(doc).annotate(form),
 		page: place.page as unknown as PdfKitDocument['page'],
 		...(signature.reserve === undefined ? {} : { reserve: signature.reserve }),
 		appearance: {
@@ -65,6 +76,7 @@ function placeSignature(doc: Placed, model: ReportModel, signature: SignatureReq
 			fontSize: sizes.small
 		}
 	});
+	form.children.push({ page: place.page.dictionary, annotation: widget });
 }
 
 /** Copies the mark of the signature's paragraph onto its runs, which is what reaches the drawing. */
@@ -92,10 +104,11 @@ export async function renderReport(model: ReportModel, options: RenderOptions = 
 		draft,
 		signedAt: options.signature ? isoSecond(options.signature.time) : null
 	});
+	const structure = buildStructure(layout.content.map(markSignatureRuns));
 	const date = fixedDate(model, options.signature);
 	const title = `${template.kind} ${model.number}, ${words.revision(model.revision)}: ${model.title}`;
 	const definition = {
-		content: keepHeadings(layout.content.map(markSignatureRuns)),
+		content: keepHeadings(structure.content),
 		header: layout.header,
 		footer: layout.footer,
 		background: layout.background,
@@ -104,6 +117,7 @@ export async function renderReport(model: ReportModel, options: RenderOptions = 
 		defaultStyle: { font: 'Noto Serif', fontSize: sizes.body, color: colours.ink },
 		version: '1.7',
 		subset: 'PDF/A-3b',
+		tagged: true,
 		displayTitle: true,
 		language: model.language,
 		info: {
@@ -142,6 +156,7 @@ export async function renderReport(model: ReportModel, options: RenderOptions = 
 	const pdf = layoutLibrary().createPdf(definition, { bufferPages: true });
 	const doc: Placed = await pdf.getStream();
 	repairMetadata(doc);
-	if (options.signature) placeSignature(doc, model, options.signature);
+	if (options.signature) placeSignature(doc, model, options.signature, structure);
+	writeStructure(doc, structure.root, structureState(doc));
 	return pdf.getBuffer();
 }
