@@ -1,5 +1,8 @@
 import { readFile } from 'node:fs/promises';
+import { availableParallelism } from 'node:os';
+import { isMainThread } from 'node:worker_threads';
 import { parseArguments } from './compute/arguments';
+import { serveShare } from './compute/threads';
 import { answer, problemOf } from './compute/answer';
 
 /* `npm run -s compute -- FILE.json|- [--threads N]`: requests in, results out; exit 0, or 2 where any request failed. */
@@ -18,12 +21,17 @@ function write(stream: NodeJS.WriteStream, text: string): Promise<void> {
 	});
 }
 
-try {
-	const { file } = parseArguments(process.argv.slice(2));
-	const { output, failed } = await answer(await input(file));
-	await write(process.stdout, `${JSON.stringify(output, null, 2)}\n`);
-	if (failed) process.exitCode = 2;
-} catch (fault) {
-	await write(process.stderr, `${JSON.stringify(problemOf(fault))}\n`);
-	process.exitCode = 2;
+if (isMainThread) await main();
+else await serveShare();
+
+async function main(): Promise<void> {
+	try {
+		const { file, threads } = parseArguments(process.argv.slice(2));
+		const { output, failed } = await answer(await input(file), threads ?? availableParallelism());
+		await write(process.stdout, `${JSON.stringify(output, null, 2)}\n`);
+		if (failed) process.exitCode = 2;
+	} catch (fault) {
+		await write(process.stderr, `${JSON.stringify(problemOf(fault))}\n`);
+		process.exitCode = 2;
+	}
 }

@@ -1,5 +1,6 @@
 import { compute } from '../../lib/calculation/compute';
 import { ProblemError, type Problem } from '../../lib/calculation/problem';
+import { inThreads, tooLong } from './threads';
 import { parseStrictJson } from '../../lib/calculation/strict-json';
 
 /** A request may run this long. */
@@ -14,17 +15,12 @@ export function problemOf(fault: unknown): { error: Problem } {
 	throw fault;
 }
 
-async function one(request: unknown): Promise<unknown> {
+async function one(request: unknown, threads: number): Promise<unknown> {
 	const end = performance.now() + limitMilliseconds;
 	return compute(request, {
+		delegate: threads < 2 ? undefined : (delegation) => inThreads(request, delegation, threads, end),
 		onProgress: () => {
-			if (performance.now() > end) {
-				throw new ProblemError(
-					'time-limit',
-					'The request took more than 300 seconds. Ask for fewer trials.',
-					''
-				);
-			}
+			if (performance.now() > end) throw tooLong();
 		}
 	});
 }
@@ -33,14 +29,14 @@ async function one(request: unknown): Promise<unknown> {
  * Answers a file of one request or an array of them.
  * @throws ProblemError where a single request fails or the text is no JSON
  */
-export async function answer(text: string): Promise<{ output: unknown; failed: boolean }> {
+export async function answer(text: string, threads: number): Promise<{ output: unknown; failed: boolean }> {
 	const parsed = parseStrictJson(text);
-	if (!Array.isArray(parsed)) return { output: await one(parsed), failed: false };
+	if (!Array.isArray(parsed)) return { output: await one(parsed, threads), failed: false };
 	const output: unknown[] = [];
 	let failed = false;
 	for (const request of parsed) {
 		try {
-			output.push(await one(request));
+			output.push(await one(request, threads));
 		} catch (fault) {
 			output.push(problemOf(fault));
 			failed = true;

@@ -1,5 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
+import { computeShare } from './compute';
 import { compute, computeNow, ProblemError } from './index';
 import type { ComputeResult, InputGiven } from './types';
 
@@ -47,6 +48,19 @@ describe('compute', () => {
 		expect(pauses).toBeGreaterThan(1);
 		expect(fractions).toEqual([...fractions].sort((a, b) => a - b));
 		expect(paused.record).toBe(computeNow(request).record);
+	});
+
+	it('gives the same bytes when other threads do blocks of it, in any number of shares', async () => {
+		const request = { ...orrin, evaluation: { trials: 123_456, interval: 'shortest' } };
+		for (const threads of [1, 2, 5]) {
+			const shared = await compute(request, {
+				delegate: async (delegation) =>
+					Array.from({ length: threads }, (_, first) =>
+						structuredClone(computeShare(request, delegation, first, threads))
+					)
+			});
+			expect(JSON.stringify(shared)).toBe(JSON.stringify(computeNow(request)));
+		}
 	});
 
 	it('lists defaults as such, with their source', () => {

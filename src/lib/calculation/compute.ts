@@ -6,7 +6,15 @@ import { toSi } from '../quantities/convert';
 import { parseUnit } from '../quantities/parse-unit';
 import { sealRecord } from '../record/seal';
 import { firstOrder, type FirstOrderOutput } from '../uncertainty/first-order';
-import { monteCarlo, type MonteCarloOutcome } from '../uncertainty/monte-carlo';
+import {
+	monteCarlo,
+	runShare,
+	type Delegation,
+	type MonteCarloOutcome,
+	type MonteCarloSettings,
+	type Share,
+	type Step
+} from '../uncertainty/monte-carlo';
 import { emptyColumns, type TrialModel } from '../uncertainty/trial-model';
 import { checkRequest, requestOf, type CheckedRequest } from './check-request';
 import { unitTexts } from './check-unit';
@@ -20,7 +28,11 @@ export interface ComputeOptions {
 	/** Called between blocks, so that whoever runs a long request can let others have a turn. */
 	pause?: () => Promise<void>;
 	signal?: AbortSignal;
+	/** Has blocks of trials done by other threads; the result is the same to the last bit without. */
+	delegate?: (delegation: Delegation) => Promise<readonly Share[] | undefined>;
 }
+
+type Steps<Result> = Generator<Step, Result, readonly Share[] | undefined>;
 
 /** The outputs that are propagated: those asked for, and the one compared, if the inputs determine it. */
 function propagatedOutputs({ model, evaluation, comparison }: CheckedRequest): string[] {
@@ -57,9 +69,23 @@ function trialModel({ model, correlations }: CheckedRequest, outputs: readonly s
 	};
 }
 
-function* propagate(checked: CheckedRequest, trials: TrialModel): Generator<number, Propagated> {
-	const { evaluation, comparison, model } = checked;
-	const propagated: Propagated = { values: firstOrderValues(trials) };
+/** The settings of the trials, with the level of a limit to be watched. */
+function trialSettings(checked: CheckedRequest, delegates: boolean): MonteCarloSettings {
+	const { evaluation, comparison } = checked;
+	const limit = comparison?.kind === 'limit' ? comparison : undefined;
+	const unit = limit === undefined ? undefined : parseUnit(limit.unit ?? outputUnit(checked, limit.output));
+	if (limit === undefined || unit === undefined) return { ...evaluation, delegates };
+	const tailShare = limit.rule.type === 'guard-band' ? limit.rule.risk : 0;
+	return {
+		...evaluation,
+		delegates,
+		watch: { output: limit.output, level: toSi(limit.value, unit), tailShare }
+	};
+}
+
+function* propagate(checked: CheckedRequest, trials: TrialModel, delegates: boolean): Steps<Propagated> {
+	const { evaluation, model } = checked;
+	const propagated: Propagated = { values: bestValues(trials) };
 	const uncertain = model.columns.some(({ distribution }) => distribution.standardUncertainty > 0);
 	if (evaluation.propagation === 'none') return propagated;
 	if (!uncertain) return { ...propagated, exact: true };
@@ -70,28 +96,25 @@ function* propagate(checked: CheckedRequest, trials: TrialModel): Generator<numb
 		return propagated;
 	}
 	propagated.linear = linearOrNone(trials, evaluation.coverage);
-	const limit = comparison?.kind === 'limit' ? comparison : undefined;
-	const unit = limit === undefined ? undefined : parseUnit(limit.unit ?? outputUnit(checked, limit.output));
-	propagated.trials = yield* monteCarlo(trials, {
-		...evaluation,
-		watch:
-			limit === undefined || unit === undefined
-				? undefined
-				: {
-						output: limit.output,
-						level: toSi(limit.value, unit),
-						tailShare: limit.rule.type === 'guard-band' ? limit.rule.risk : 0
-					}
-	});
+	propagated.trials = yield* monteCarlo(trials, trialSettings(checked, delegates));
 	propagated.check = propagated.trials;
 	return propagated;
+}
+
+/** One thread's part of the trials of a request; see `Delegation`. */
+export function computeShare(input: unknown, delegation: Delegation, first: number, stride: number): Share {
+	const checked = checkRequest(requestOf(input));
+	const trials = trialModel(checked, propagatedOutputs(checked));
+	const { evaluation } = checked;
+	if (evaluation.trials === 'adaptive') throw new Error('Adaptive trials are not shared out.');
+	return runShare(trials, trialSettings(checked, false), evaluation.trials, delegation, first, stride);
 }
 
 function outputUnit({ model }: CheckedRequest, id: string): string {
 	return model.outputs.find((output) => output.id === id)?.unit ?? '';
 }
 
-function firstOrderValues(trials: TrialModel): Record<string, number> {
+function bestValues(trials: TrialModel): Record<string, number> {
 	const inputs = Object.fromEntries(trials.columns.map(({ id, value }) => [id, Float64Array.of(value)]));
 	const out = emptyColumns(trials.outputs, 1);
 	trials.evaluate(inputs, 1, out);
@@ -118,16 +141,16 @@ function linearOrNone(trials: TrialModel, coverage: number): Record<string, Firs
 
 function listEvaluation(
 	{ evaluation }: CheckedRequest,
-	outcome: MonteCarloOutcome | undefined,
-	exact: boolean
+	outcome: MonteCarloOutcome | undefined
 ): ComputeResult['evaluation'] {
 	const { propagation, seed, coverage, interval } = evaluation;
 	if (propagation === 'none') return { propagation };
 	if (propagation === 'first-order') return { propagation, coverage };
+	// Without any uncertain input every trial gives the same value, and none need be drawn.
 	const trials = outcome?.trials ?? (evaluation.trials === 'adaptive' ? 0 : evaluation.trials);
 	return {
 		propagation,
-		trials: exact ? 0 : trials,
+		trials,
 		seed,
 		coverage,
 		interval,
@@ -143,12 +166,12 @@ function listEvaluation(
  * (`loadUnits`) before; `compute` does that.
  * @throws ProblemError for any fault of the request
  */
-export function* computeInBlocks(input: unknown): Generator<number, ComputeResult> {
+export function* computeInBlocks(input: unknown, delegates = false): Steps<ComputeResult> {
 	const checked = checkRequest(requestOf(input));
 	const { model, evaluation, comparison, request } = checked;
 	const ids = propagatedOutputs(checked);
 	const trials = trialModel(checked, ids);
-	const propagated = yield* propagate(checked, trials);
+	const propagated = yield* propagate(checked, trials, delegates);
 	const outputs = listOutputs(checked, ids, propagated);
 	const banded = propagated.trials !== undefined;
 	const series = drawSeries(
@@ -172,7 +195,7 @@ export function* computeInBlocks(input: unknown): Generator<number, ComputeResul
 				: Object.fromEntries(Object.entries(outputs).filter(([id]) => asked.includes(id))),
 		series,
 		cautions,
-		evaluation: listEvaluation(checked, propagated.trials, propagated.exact === true),
+		evaluation: listEvaluation(checked, propagated.trials),
 		...(finding === undefined ? {} : { finding })
 	});
 }
@@ -181,7 +204,7 @@ export function* computeInBlocks(input: unknown): Generator<number, ComputeResul
 export function computeNow(input: unknown): ComputeResult {
 	const steps = computeInBlocks(input);
 	for (;;) {
-		const step = steps.next();
+		const step = steps.next(undefined);
 		if (step.done === true) return step.value;
 	}
 }
@@ -192,12 +215,15 @@ export function computeNow(input: unknown): ComputeResult {
  */
 export async function compute(input: unknown, options: ComputeOptions = {}): Promise<ComputeResult> {
 	await loadUnits(unitTexts(requestOf(input)));
-	const steps = computeInBlocks(input);
+	const steps = computeInBlocks(input, options.delegate !== undefined);
+	let shares: readonly Share[] | undefined;
 	for (;;) {
 		options.signal?.throwIfAborted();
-		const step = steps.next();
+		const step = steps.next(shares);
+		shares = undefined;
 		if (step.done === true) return step.value;
-		options.onProgress?.(step.value);
+		if (typeof step.value === 'number') options.onProgress?.(step.value);
+		else shares = await options.delegate?.(step.value);
 		await options.pause?.();
 	}
 }

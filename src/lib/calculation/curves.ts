@@ -6,7 +6,7 @@ import type { CompiledModel } from './model';
 import type { Series } from './types';
 
 /** Trials behind a band: the first ones of the run, the same at every abscissa. A band is for the eye. */
-const bandTrials = 1000;
+const bandTrials = 500;
 
 /** Every curve of the method at the best estimates, with its coverage band where trials were propagated. */
 export function drawSeries(

@@ -1,7 +1,5 @@
-import { computeInBlocks } from '../calculation/compute';
-import { unitTexts } from '../calculation/check-unit';
+import { compute, type ComputeOptions } from '../calculation/compute';
 import type { ComputationRecord } from '../calculation/types';
-import { loadUnits } from '../quantities';
 import { recordHash } from './seal';
 
 export interface Difference {
@@ -72,19 +70,12 @@ class Comparison {
  */
 export async function recompute(
 	record: ComputationRecord,
-	options: { onProgress?: (fraction: number) => void; pause?: () => Promise<void> } = {}
+	options: ComputeOptions = {}
 ): Promise<Recomputation> {
-	await loadUnits(unitTexts(record.request));
-	const steps = computeInBlocks(record.request);
-	let step = steps.next();
-	while (step.done !== true) {
-		options.onProgress?.(step.value);
-		await options.pause?.();
-		step = steps.next();
-	}
+	const result = await compute(record.request, options);
 	const comparison = new Comparison();
 	// Through JSON, as the stored one went: keys without a value and negative zeros do not survive it.
-	const fresh = JSON.parse(JSON.stringify(step.value)) as ComputationRecord['result'];
+	const fresh = JSON.parse(JSON.stringify(result)) as ComputationRecord['result'];
 	comparison.walk({ ...record.result, record: undefined }, { ...fresh, record: undefined }, '');
 	// The hash speaks for the stored record as it stands; what was recomputed has been compared figure by figure.
 	comparison.walk(record.result.record, hashOf(record), '/record');

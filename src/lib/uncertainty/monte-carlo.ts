@@ -3,7 +3,7 @@ import { coveredTrials, shortestInterval, symmetricInterval, type Ends } from '.
 import { decimalsFor } from '../quantities/round';
 import { integerPower } from '../exact';
 import { Sampler } from './sampler';
-import { Tally, TooFewKept, OrderStatistics } from './tally';
+import { Tally, TooFewKept, type OrderStatistics, type Pivots, type TallyState } from './tally';
 import { blockSize, emptyColumns, evaluateOnce, type TrialModel } from './trial-model';
 
 export interface MonteCarloSettings {
@@ -15,7 +15,25 @@ export interface MonteCarloSettings {
 	interval: 'symmetric' | 'shortest';
 	/** An output and a level of it whose share of trials at or below is asked for. */
 	watch?: { output: string; level: number; tailShare: number };
+	/** Whether whoever drives the generator can have blocks done elsewhere. */
+	delegates?: boolean;
 }
+
+/** Blocks from `from` on that other threads may do; the generator is resumed with what they did. */
+export interface Delegation {
+	from: number;
+	blocks: number;
+	pivots: Record<string, Pivots>;
+}
+
+/** What one thread did of a delegation. */
+export interface Share {
+	redrawn: number;
+	tallies: Record<string, TallyState>;
+}
+
+/** A step of a run: the share done, or blocks that others may do. */
+export type Step = number | Delegation;
 
 export interface OutputStatistics {
 	mean: number;
@@ -48,7 +66,7 @@ const mostAdaptiveTrials = 5_000_000;
 export function* monteCarlo(
 	model: TrialModel,
 	settings: MonteCarloSettings
-): Generator<number, MonteCarloOutcome> {
+): Generator<Step, MonteCarloOutcome, readonly Share[] | undefined> {
 	if (settings.trials === 'adaptive') return yield* adaptive(model, settings);
 	// Six standard errors of the pilot's tail share have always sufficed; if not, the run is repeated.
 	for (let margin = 6; ; margin *= 4) {
@@ -94,6 +112,11 @@ class Run {
 		}
 	}
 
+	take({ redrawn, tallies }: Share): void {
+		this.redrawn += redrawn;
+		for (const [id, state] of Object.entries(tallies)) this.tallies[id]?.merge(state);
+	}
+
 	outcome(trials: number, converged: boolean): MonteCarloOutcome {
 		const { coverage, interval, watch } = this.settings;
 		const tail = Math.ceil(trials * tailShare(this.settings)) + 2;
@@ -128,12 +151,19 @@ function* fixed(
 	settings: MonteCarloSettings,
 	trials: number,
 	margin: number
-): Generator<number, MonteCarloOutcome> {
+): Generator<Step, MonteCarloOutcome, readonly Share[] | undefined> {
 	const blocks = Math.ceil(trials / blockSize);
 	const run = new Run(model, settings, blocks);
 	for (let block = 0; block < blocks; block++) {
 		run.block(block, Math.min(blockSize, trials - block * blockSize));
-		if (block === pilotBlocks - 1 && blocks > pilotBlocks) setPivots(run, settings, margin);
+		if (block === pilotBlocks - 1 && blocks > pilotBlocks) {
+			const pivots = setPivots(run, settings, margin);
+			const shares = settings.delegates === true ? yield { from: pilotBlocks, blocks, pivots } : undefined;
+			if (shares !== undefined) {
+				for (const share of shares) run.take(share);
+				break;
+			}
+		}
 		if (block % blocksPerStep === blocksPerStep - 1) yield (block + 1) / blocks;
 	}
 	// JCGM 101:2008, 7.2.2: at least 10 000 / (1 - p) trials.
@@ -145,15 +175,39 @@ function tailShare({ coverage, interval, watch }: MonteCarloSettings): number {
 	return Math.max(interval === 'shortest' ? 1 - coverage : (1 - coverage) / 2, watch?.tailShare ?? 0);
 }
 
-function setPivots(run: Run, settings: MonteCarloSettings, margin: number): void {
+/** Sets the bounds outside which values are kept, from the order statistics of the first blocks. */
+function setPivots(run: Run, settings: MonteCarloSettings, margin: number): Record<string, Pivots> {
 	const pilot = pilotBlocks * blockSize;
 	const share = tailShare(settings);
 	const rank = Math.ceil(pilot * (share + margin * Math.sqrt((share * (1 - share)) / pilot))) + 2;
-	if (rank >= pilot / 2) return;
-	for (const tally of Object.values(run.tallies)) {
+	const pivots: Record<string, Pivots> = {};
+	if (rank >= pilot / 2) return pivots;
+	for (const [id, tally] of Object.entries(run.tallies)) {
 		const order = tally.order(rank);
-		tally.keepOutside({ low: order.at(rank), high: order.at(pilot + 1 - rank) });
+		pivots[id] = { low: order.at(rank), high: order.at(pilot + 1 - rank) };
+		tally.keepOutside(pivots[id]);
 	}
+	return pivots;
+}
+
+/** Every `stride`-th block of a delegation, from its `first` on: one thread's part. */
+export function runShare(
+	model: TrialModel,
+	settings: MonteCarloSettings,
+	trials: number,
+	{ from, blocks, pivots }: Delegation,
+	first: number,
+	stride: number
+): Share {
+	const run = new Run(model, settings, blocks);
+	for (const [id, pivot] of Object.entries(pivots)) run.tallies[id]?.keepOutside(pivot);
+	for (let block = from + first; block < blocks; block += stride) {
+		run.block(block, Math.min(blockSize, trials - block * blockSize));
+	}
+	return {
+		redrawn: run.redrawn,
+		tallies: Object.fromEntries(Object.entries(run.tallies).map(([id, tally]) => [id, tally.state()]))
+	};
 }
 
 interface Batch {
@@ -164,7 +218,10 @@ interface Batch {
 }
 
 /** JCGM 101:2008, 7.9: batches until twice the standard deviation of each averaged figure is below the tolerance. */
-function* adaptive(model: TrialModel, settings: MonteCarloSettings): Generator<number, MonteCarloOutcome> {
+function* adaptive(
+	model: TrialModel,
+	settings: MonteCarloSettings
+): Generator<Step, MonteCarloOutcome, readonly Share[] | undefined> {
 	const { coverage, interval, digits } = settings;
 	const perBatch = Math.ceil(Math.max(100 / (1 - coverage), 10_000) / blockSize);
 	const batchTrials = perBatch * blockSize;
@@ -224,7 +281,7 @@ export function enoughTrials(trials: number, coverage: number): boolean {
 export function runMonteCarlo(model: TrialModel, settings: MonteCarloSettings): MonteCarloOutcome {
 	const steps = monteCarlo(model, settings);
 	for (;;) {
-		const step = steps.next();
+		const step = steps.next(undefined);
 		if (step.done === true) return step.value;
 	}
 }

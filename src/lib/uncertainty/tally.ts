@@ -14,9 +14,24 @@ class NumberList {
 		return this.values;
 	}
 
+	append(more: Float64Array): void {
+		this.reserve(more.length).set(more, this.length);
+		this.length += more.length;
+	}
+
 	copy(): Float64Array {
 		return this.values.slice(0, this.length);
 	}
+}
+
+/** Sums by block (zero for blocks of others) and kept values, in no order. */
+export interface TallyState {
+	sums: Float64Array;
+	squares: Float64Array;
+	count: number;
+	atOrBelow: number;
+	lows: Float64Array;
+	highs: Float64Array;
 }
 
 /** Bounds outside which values are kept for the ends of an interval. */
@@ -120,6 +135,30 @@ export class Tally {
 		}
 		this.lows.length = low;
 		this.highs.length = high;
+	}
+
+	/** What another thread needs to take this tally over; plain data that survives a message. */
+	state(): TallyState {
+		return {
+			sums: this.sums,
+			squares: this.squares,
+			count: this.count,
+			atOrBelow: this.atOrBelow,
+			lows: this.lows.copy(),
+			highs: this.highs.copy()
+		};
+	}
+
+	/** Takes over blocks that another thread did; both kept values outside the same pivots. */
+	merge(state: TallyState): void {
+		for (let i = 0; i < this.sums.length; i++) {
+			this.sums[i] = (this.sums[i] as number) + (state.sums[i] as number);
+			this.squares[i] = (this.squares[i] as number) + (state.squares[i] as number);
+		}
+		this.count += state.count;
+		this.atOrBelow += state.atOrBelow;
+		this.lows.append(state.lows);
+		this.highs.append(state.highs);
 	}
 
 	/** Mean and standard deviation (over n - 1) of all trials. */
