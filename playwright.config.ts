@@ -17,6 +17,7 @@ export default defineConfig({
 	expect: { timeout: 15_000 },
 	use: {
 		baseURL: address,
+		actionTimeout: 15_000,
 		locale: 'en-GB',
 		timezoneId: 'UTC',
 		screenshot: 'only-on-failure',

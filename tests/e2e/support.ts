@@ -44,9 +44,9 @@ export async function newDossier(
 ): Promise<string> {
 	await page.goto('/dossiers/new');
 	await settled(page);
-	await page.getByLabel('Title').fill(title);
-	await page.getByLabel('The question').fill(question);
-	await page.getByLabel('Client', { exact: true }).fill(client);
+	await page.locator('#title').fill(title);
+	await page.locator('#question').fill(question);
+	await page.locator('#client').fill(client);
 	await page.getByRole('main').getByRole('button').first().click();
 	await expect(page).toHaveURL(/\/dossiers\/[0-9a-f-]{36}$/);
 	return page.url();

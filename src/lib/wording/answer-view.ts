@@ -19,7 +19,7 @@ export interface AnswerView {
 	/** The gravest caution, if any, and how many there are in all. */
 	caution?: Pick<Caution, 'code' | 'level' | 'text'>;
 	cautions: number;
-	/** Fault by field id; none where there is a value. */
+	/** Fault by field id; beside a value only those of the claim or the limit. */
 	faults: Record<string, string>;
 }
 

@@ -4,6 +4,7 @@ import { spreadOf } from '$lib/calculation/spreads';
 import type { Method, NumberInput } from '$lib/methods/types';
 import { attachUnit, formatSignificant } from '$lib/quantities';
 import { parseNumber } from '$lib/quantities/parse-number';
+import { defaultSourceText } from '$lib/wording/default-source';
 import { areaWords, periodWords, temperatureKindWords } from '$lib/wording/averages';
 
 export interface CheckRow {
@@ -30,6 +31,7 @@ function spreadWords(assumption: AssumptionDraft): string {
 }
 
 function sourceWords(
+	method: Method,
 	assumption: AssumptionDraft,
 	evidence: readonly { id: string; fileName: string }[]
 ): string {
@@ -37,6 +39,7 @@ function sourceWords(
 	const file = evidence.find(({ id }) => id === evidenceId)?.fileName;
 	switch (kind) {
 		case 'default':
+			return defaultSourceText(method, text);
 		case 'citation':
 			return text;
 		case 'file':
@@ -51,6 +54,7 @@ function sourceWords(
 }
 
 function assumptionRow(
+	method: Method,
 	input: NumberInput,
 	assumption: AssumptionDraft | undefined,
 	href: string,
@@ -60,7 +64,7 @@ function assumptionRow(
 	if (assumption === undefined || assumption.value.trim() === '') {
 		return { label, value: input.optional === true ? 'not given (optional)' : 'not given', href };
 	}
-	const source = sourceWords(assumption, evidence);
+	const source = sourceWords(method, assumption, evidence);
 	return {
 		label,
 		value: understood(assumption.value, assumption.unit),
@@ -93,6 +97,7 @@ export function checkRows(
 	for (const input of numberInputs(method)) {
 		rows.push(
 			assumptionRow(
+				method,
 				input,
 				draft.assumptions[input.id],
 				`${base}/inputs/${input.group}#in.${input.id}.value`,

@@ -25,16 +25,20 @@ function small(request: ComputeRequest): ComputeRequest {
 export async function answerOf(draft: CalculationDraft): Promise<AnswerView | null> {
 	const method = draft.method === null ? undefined : methodById(draft.method);
 	if (method === undefined) return null;
-	const { request, faults } = toRequest(draft, method);
+	const { request: whole, faults } = toRequest(draft, method);
+	// What it is compared with is asked after the assumptions; the figures need not wait for it.
+	const onlyComparison = Object.keys(faults).every((field) => /^(claim|limit)\./.test(field));
+	const request =
+		whole ?? (onlyComparison ? toRequest({ ...draft, kind: 'find-value' }, method).request : null);
 	if (request === null) return emptyAnswer(draft, method, faults);
 	try {
 		const result = await compute(small(request));
 		// The preview's few trials are its own doing, not the author's.
 		const cautions = result.cautions.filter(({ code }) => code !== 'not-converged');
-		return answerView(draft, method, { ...result, cautions });
+		return { ...answerView(draft, method, { ...result, cautions }), faults };
 	} catch (cause) {
 		if (cause instanceof ProblemError) {
-			return emptyAnswer(draft, method, { [fieldOfProblem(cause)]: cause.message });
+			return emptyAnswer(draft, method, { ...faults, [fieldOfProblem(cause)]: cause.message });
 		}
 		throw cause;
 	}

@@ -98,7 +98,7 @@ export async function resultView(
 	db: Queryable = database()
 ): Promise<ResultView> {
 	const { model, references } = await runModel(membership, calculation, run, db);
-	const { request: _request, result, figures, equations, ...rest } = model;
+	const { request, result, figures, equations, ...rest } = model;
 	return {
 		run: rest,
 		// One after the other: the drawing library numbers its parts in one count per process.
@@ -115,6 +115,6 @@ export async function resultView(
 		})),
 		references,
 		trials: result.evaluation.trials ?? null,
-		seed: result.evaluation.seed ?? null
+		seed: result.evaluation.seed ?? request.evaluation?.seed ?? null
 	};
 }
