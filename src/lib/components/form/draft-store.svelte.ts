@@ -69,7 +69,7 @@ export class DraftStore {
 		try {
 			const response = await fetch(`/api/calculations/${this.id}/draft`, {
 				method: 'PUT',
-				headers: { 'content-type': 'application/json' },
+				headers: { 'content-type': 'application/json', accept: 'application/json' },
 				body: JSON.stringify({ draft: JSON.parse(json) as unknown, baseVersion: this.version })
 			});
 			if (response.ok) {
@@ -83,7 +83,10 @@ export class DraftStore {
 			}
 			const problem = (await response.json().catch(() => undefined)) as { message?: string } | undefined;
 			this.status = response.status === 409 ? 'conflict' : 'failed';
-			this.message = problem?.message ?? `The server answered ${response.status}.`;
+			this.message =
+				response.status === 401
+					? 'You have been signed out. Sign in again in another tab; what you typed stays here and is then saved.'
+					: (problem?.message ?? `The server answered ${response.status}.`);
 		} catch {
 			this.status = 'failed';
 			this.message = 'The server cannot be reached. What you typed stays here and is saved when it can be.';

@@ -9,7 +9,7 @@ import { database, type Database, type Queryable } from '../db';
 import { issues, organisations, reports, users } from '../db/schema';
 import { env } from '../env';
 import { enqueue } from '../jobs/queue';
-import { rootPem } from '../signing/authority';
+import { ensureOrganisationCertificate, rootPem } from '../signing/authority';
 import { newCode } from './code';
 import { getReport, type ReportView } from './load';
 import { modelOf } from './model';
@@ -91,6 +91,8 @@ export async function issueReport(
 	requireAction(membership, 'report.issue');
 	const seen = await getReport(membership, id, db);
 	const root = new X509Certificate(await rootPem(db));
+	// Made now, not by the worker: a certificate must be older than the time that the report states.
+	await ensureOrganisationCertificate(db, membership.organisationId);
 	const rootFingerprint = root.fingerprint256.replaceAll(':', '').toLowerCase();
 	return db.transaction(async (tx) => {
 		const [locked] = await tx
