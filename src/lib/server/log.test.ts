@@ -1,4 +1,5 @@
 import { Writable } from 'node:stream';
+import { DrizzleQueryError } from 'drizzle-orm';
 import { describe, expect, it } from 'vitest';
 import { createLog } from './log';
 
@@ -40,5 +41,20 @@ describe('the log', () => {
 		const entry = JSON.parse(lines[0] ?? '') as { err: { message: string; stack: string } };
 		expect(entry.err.message).toBe('the roof is hot');
 		expect(entry.err.stack).toContain('log.test');
+	});
+
+	it('tells which query failed and why, but not with which values', () => {
+		const { lines, stream } = capture();
+		const log = createLog(stream);
+		log.level = 'info';
+		const cause = new Error('connection refused');
+		const failed = new DrizzleQueryError('select 1 where hash = $1', ['hash-four\nmore'], cause);
+		log.error({ err: failed }, 'failed');
+		log.error({ err: new Error('outer', { cause: failed }) }, 'failed');
+		const text = lines.join('');
+		expect(text).toContain('select 1 where hash');
+		expect(text).toContain('connection refused');
+		expect(text).not.toContain('hash-four');
+		expect(text).not.toContain('more');
 	});
 });

@@ -23,6 +23,20 @@ const secretNames = [
 	'connectionString'
 ];
 
+/** A failed query's error quotes the values that were sent with it: mail addresses, hashes, texts. They are cut out. */
+export function withoutQueryValues(text: string): string {
+	return text.replace(/\nparams: [\s\S]*?(?=\n\s+at |\ncaused by: |$)/g, '');
+}
+
+function serializeError(error: unknown): unknown {
+	if (!(error instanceof Error)) return error;
+	const plain = pino.stdSerializers.err(error);
+	delete plain.params;
+	plain.message = withoutQueryValues(plain.message);
+	plain.stack = withoutQueryValues(plain.stack);
+	return plain;
+}
+
 /** A logger of its own on any stream; `log` below is the process's. */
 export function createLog(destination?: pino.DestinationStream): Logger {
 	const options: pino.LoggerOptions = {
@@ -32,7 +46,7 @@ export function createLog(destination?: pino.DestinationStream): Logger {
 			paths: secretNames.flatMap((name) => [name, `*.${name}`, `*.*.${name}`]),
 			censor: '[withheld]'
 		},
-		serializers: { err: pino.stdSerializers.err, error: pino.stdSerializers.err }
+		serializers: { err: serializeError, error: serializeError }
 	};
 	return destination === undefined ? pino(options) : pino(options, destination);
 }

@@ -33,7 +33,7 @@ export interface JobDefinition<N extends JobName = JobName> {
 	handle(payload: JobPayloads[N], context: JobContext): Promise<void>;
 	/**
 	 * Called when the attempts are used up: shows the failure where the job's subject is shown.
-	 * @param problem the last attempt's error, in words.
+	 * @param problem the words of a PermanentJobError; for any other fault a sentence without its internals.
 	 */
 	abandon(payload: JobPayloads[N], problem: string, tx: Transaction): Promise<void>;
 }
@@ -41,7 +41,10 @@ export interface JobDefinition<N extends JobName = JobName> {
 /** One definition for every job name. */
 export type JobDefinitions = { readonly [N in JobName]: JobDefinition<N> };
 
-/** Thrown by a handler for a fault that a further attempt cannot mend: the job goes to its dead letter at once. */
+/**
+ * Thrown by a handler for a fault that a further attempt cannot mend but a person can: the job goes to its dead letter at
+ * once, and the message is shown to them.
+ */
 export class PermanentJobError extends Error {
 	constructor(message: string, options?: ErrorOptions) {
 		super(message, options);

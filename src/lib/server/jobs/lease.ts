@@ -1,6 +1,7 @@
 import { sql } from 'drizzle-orm';
 import type PgBoss from 'pg-boss';
 import type { Queryable } from '../db';
+import { withoutQueryValues } from '../log';
 import { executorIn } from './executor';
 import { lease as times } from './names';
 
@@ -58,7 +59,11 @@ export async function fail(boss: PgBoss, tx: Queryable, lease: Lease, problem: E
 		if (error instanceof LeaseLostError) return;
 		throw error;
 	}
-	const output = { message: problem.message, name: problem.name, stack: problem.stack ?? '' };
+	const output = {
+		name: problem.name,
+		message: withoutQueryValues(problem.message),
+		stack: withoutQueryValues(problem.stack ?? '')
+	};
 	await boss.fail(lease.queue, lease.id, output, { db: executorIn(tx) });
 }
 

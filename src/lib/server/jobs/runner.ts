@@ -216,11 +216,10 @@ function rejectOnAbort(signal: AbortSignal): Promise<never> {
 	});
 }
 
+/** What a person is told: the words of a fault that they can mend; of any other, only that it was. */
 function problemIn(output: unknown): string {
-	if (typeof output === 'object' && output !== null) {
-		if ('message' in output && typeof output.message === 'string') return output.message;
-		// What the queue writes where a worker died: { value: { message } }.
-		if ('value' in output) return problemIn(output.value);
+	if (typeof output === 'object' && output !== null && 'name' in output && 'message' in output) {
+		if (output.name === PermanentJobError.name && typeof output.message === 'string') return output.message;
 	}
-	return 'The work was started several times and never came to an end.';
+	return 'This could not be finished in several attempts. The fault is ours and is noted; try again later.';
 }

@@ -8,6 +8,7 @@ import {
 	dossiers,
 	evidence,
 	issues,
+	previews,
 	reports,
 	runs,
 	verificationTokens,
@@ -51,6 +52,7 @@ async function purge(tx: Transaction): Promise<void> {
 		.where(and(lt(dossiers.deletedAt, thirtyDaysAgo), not(exists(issuesIn(dossiers.id)))));
 
 	await tx.delete(verificationTokens).where(lt(verificationTokens.expires, sql`now()`));
+	await tx.delete(previews).where(lt(previews.requestedAt, sql`now() - interval '2 days'`));
 	await tx.delete(workers).where(lt(workers.seenAt, sql`now() - interval '1 day'`));
 }
 
