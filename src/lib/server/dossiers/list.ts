@@ -39,6 +39,7 @@ export async function listDossiers(
 		dossiers.projectNumber,
 		dossiers.orderNumber
 	]);
+	const order = ordered(sortedBy[query.sort], query.order, dossiers.id);
 	return paged(
 		query,
 		async () => {
@@ -51,24 +52,38 @@ export async function listDossiers(
 				.where(own);
 			return counted ?? { total: 0, matching: 0 };
 		},
-		(limit, offset) =>
-			db
+		(limit, offset) => {
+			// The page is cut first: counting for every row before it would read the whole list's calculations.
+			const page = db
 				.select({
 					id: dossiers.id,
 					title: dossiers.title,
 					client: dossiers.client,
 					projectNumber: dossiers.projectNumber,
-					calculations: db.$count(
-						calculations,
-						and(eq(calculations.dossierId, dossiers.id), isNull(calculations.deletedAt))
-					),
-					reports: db.$count(reports, and(eq(reports.dossierId, dossiers.id), isNull(reports.deletedAt))),
-					updatedAt: dossiers.updatedAt
+					updatedAt: dossiers.updatedAt,
+					place: sql<number>`row_number() over (order by ${sql.join(order, sql`, `)})`.as('place')
 				})
 				.from(dossiers)
 				.where(and(own, found))
-				.orderBy(...ordered(sortedBy[query.sort], query.order, dossiers.id))
+				.orderBy(...order)
 				.limit(limit)
 				.offset(offset)
+				.as('page');
+			return db
+				.select({
+					id: page.id,
+					title: page.title,
+					client: page.client,
+					projectNumber: page.projectNumber,
+					calculations: db.$count(
+						calculations,
+						and(eq(calculations.dossierId, page.id), isNull(calculations.deletedAt))
+					),
+					reports: db.$count(reports, and(eq(reports.dossierId, page.id), isNull(reports.deletedAt))),
+					updatedAt: page.updatedAt
+				})
+				.from(page)
+				.orderBy(page.place);
+		}
 	);
 }

@@ -44,7 +44,8 @@ export const reports = pgTable(
 	},
 	(t) => [
 		uniqueIndex('reports_number').on(t.organisationId, t.number, t.revision),
-		index('reports_organisation').on(t.organisationId, t.updatedAt)
+		index('reports_organisation').on(t.organisationId, t.updatedAt),
+		index('reports_dossier').on(t.dossierId)
 	]
 );
 

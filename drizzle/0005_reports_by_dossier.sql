@@ -1,0 +1,1 @@
+CREATE INDEX "reports_dossier" ON "reports" USING btree ("dossier_id");
