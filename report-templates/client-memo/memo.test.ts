@@ -7,7 +7,7 @@ import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest';
 import { compute } from '$lib/calculation';
 import { methodById } from '$lib/methods';
 import { buildReportModel, recordAttachment, unmetDuties, type ReportModel } from '$lib/report';
-import { renderReport, UnprintableTextError } from '$lib/server/reports/render';
+import { renderReport, unprintableText, UnprintableTextError } from '$lib/server/reports/render';
 import { checkMarkedContent, laidOpen } from '$lib/server/reports/render/testing/marked-content';
 import { samples } from './sample';
 
@@ -225,6 +225,8 @@ describe('hostile text', () => {
 		const failure = await renderReport(bad, { watermark: true }).catch((error: unknown) => error);
 		expect(failure).toBeInstanceOf(UnprintableTextError);
 		expect((failure as Error).message).toContain(`“${character}”`);
+		expect(unprintableText(bad)?.message).toBe((failure as Error).message);
+		expect(unprintableText(model('strain'))).toBeNull();
 	});
 
 	it('that turns the direction of writing loses that power', async () => {

@@ -60,7 +60,7 @@ export const documentWords = {
 	workingWith: 'Each equation stands first in symbols, then with the best estimates put in.',
 	figures: 'Figures',
 	figureLabel: (n: number) => `Figure ${n}.`,
-	figureBand: 'A shaded band, where there is one, is the coverage interval.',
+	figureBand: 'Shaded, where it is wider than the line: the coverage interval.',
 	howSure: 'How sure',
 	leftOut: 'What was left out',
 	leftOutByAuthor: 'The author adds:',
