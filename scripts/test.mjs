@@ -1,17 +1,13 @@
-import { rmSync } from 'node:fs';
-import { dirname, join } from 'node:path';
+import { join } from 'node:path';
 import { ensureBuild, ensureWorkerBuild } from './lib/build.mjs';
 import { ensureDependencies, requireNode } from './lib/dependencies.mjs';
 import { holderOf, takeLock } from './lib/lock.mjs';
 import { ensurePackages, packagesToTest } from './lib/packages.mjs';
 import { dataFolder, ensureFolder } from './lib/paths.mjs';
 import { PlainError } from './lib/plain-error.mjs';
-import { freePort } from './lib/ports.mjs';
-import { startCluster, stopCluster, throwAwayFolder } from './lib/postgres.mjs';
 import { endRunning } from './lib/run.mjs';
-import { makeSecrets } from './lib/secrets.mjs';
-import { startService } from './lib/service.mjs';
 import { checkStage, playwrightStage, programs, vitestStage } from './lib/stages.mjs';
+import { cleanEnvironment, startDatabase, startForBrowser } from './lib/throw-away-service.mjs';
 
 /*
  * `npm test`: sets up everything on a throw-away database, runs every stage whatever the others say, and ends with
@@ -67,62 +63,21 @@ const stages = {
 	},
 	browser: async (context) => {
 		await ensureBuild(say);
-		const started = await startForBrowser();
+		if (cluster === undefined) throw new Error('There is no database.');
+		const started = await startForBrowser({
+			databaseUrl: cluster.url,
+			say,
+			onStop: (stop) => void toStop.push(stop),
+			onCrash: (reason) => {
+				if (!ending) console.error(`A part of the service ended during the tests. ${reason}`);
+			}
+		});
 		return await playwrightStage({ ...context, env: { ...context.env, ...started } });
 	}
 };
 
 /** @type {{ url: string } | undefined} */
 let cluster;
-
-/** Without the caller's settings for a service of their own, which must not reach the tests. @returns {NodeJS.ProcessEnv} */
-function cleanEnvironment() {
-	const own =
-		/^(DATABASE_URL|PORT|HOST|ORIGIN|AUTH_SECRET|SEALING_KEYS|SMTP_URL|MAIL_.*|NOONMARK_.*|NODE_ENV)$/;
-	return Object.fromEntries(Object.entries(process.env).filter(([name]) => !own.test(name)));
-}
-
-/** The whole service on free ports, with what the browser tests are told about it. @returns {Promise<NodeJS.ProcessEnv>} */
-async function startForBrowser() {
-	if (cluster === undefined) throw new Error('There is no database.');
-	const folder = ensureFolder(join(dataFolder, `test-${process.pid}`));
-	toStop.push(() => rmSync(folder, { recursive: true, force: true }));
-	const service = await startService({
-		databaseUrl: cluster.url,
-		secrets: makeSecrets(),
-		ports: { web: await freePort(), smtp: await freePort(), mail: await freePort() },
-		inherited: cleanEnvironment(),
-		folder,
-		say,
-		onStop: (stop) => void toStop.push(stop)
-	});
-	void service.crashed.then((reason) => {
-		if (!ending) console.error(`A part of the service ended during the tests. ${reason}`);
-	});
-	return {
-		E2E_ADDRESS: service.address,
-		E2E_MAIL_READER: service.mailReader,
-		E2E_SIGN_INS: JSON.stringify(service.signIns),
-		E2E_WORKER_PROCESS: String(service.workerProcessId)
-	};
-}
-
-/** A cluster for this run alone. */
-async function startDatabase() {
-	const folder = throwAwayFolder();
-	const { databasePassword, databaseKeeperPassword } = makeSecrets();
-	toStop.push(async () => {
-		await stopCluster(folder);
-		rmSync(dirname(folder), { recursive: true, force: true });
-	});
-	cluster = await startCluster({
-		folder,
-		port: await freePort(),
-		password: databasePassword,
-		keeperPassword: databaseKeeperPassword,
-		durable: false
-	});
-}
 
 /** @param {string[]} wanted */
 async function main(wanted) {
@@ -149,8 +104,8 @@ async function main(wanted) {
 	const reports = ensureFolder(join(dataFolder, 'test-reports'));
 	const env = cleanEnvironment();
 	if (chosen.some((name) => name === 'integration' || name === 'browser')) {
-		await startDatabase();
-		env.TEST_DATABASE_URL = cluster?.url;
+		cluster = await startDatabase((stop) => void toStop.push(stop));
+		env.TEST_DATABASE_URL = cluster.url;
 	}
 	await checkStage(programs.svelteKit, ['sync'], { env, reports });
 
