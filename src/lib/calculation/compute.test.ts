@@ -209,6 +209,28 @@ describe('compute', () => {
 		expect(Object.keys(linked.outputs)).toEqual(['temperatureDifference']);
 	});
 
+	it('draws a trial again in which a linked quantity is impossible', () => {
+		// The residual of a night side at 0 K is zero and never negative; a difference is, in half of the trials.
+		const from = {
+			method: 'effective-temperature',
+			inputs: {
+				bondAlbedo: { value: 0.3 },
+				observedTemperature: { value: 255, unit: 'K', distribution: normal(1) }
+			},
+			output: 'temperatureDifference'
+		};
+		const result = computeNow({
+			method: 'sunlit-equilibrium',
+			inputs: { bondAlbedo: { value: 0.1 }, nightTemperature: { from } },
+			evaluation: { trials: 10_000 }
+		});
+		expect(result.inputs.nightTemperature).toMatchObject({ given: true, unit: 'K' });
+		expect(result.evaluation.redrawn).toBeGreaterThan(1000);
+		expect(result.outputs.wholeSphereMeanTemperature?.interval?.low).toBeGreaterThan(
+			(result.outputs.sunlitMeanTemperature?.value ?? NaN) / 2
+		);
+	});
+
 	it('draws a curve for each series, with a band that holds it', () => {
 		const { series } = computeNow(orrin);
 		expect(Object.keys(series)).toEqual([

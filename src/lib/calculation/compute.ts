@@ -56,6 +56,7 @@ function trialModel({ model, correlations }: CheckedRequest, outputs: readonly s
 		columns: model.columns,
 		correlations,
 		outputs,
+		reject: model.reject,
 		evaluate(inputs, n, out) {
 			if (size < n) {
 				size = n;

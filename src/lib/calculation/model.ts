@@ -1,9 +1,17 @@
 import { methodById } from '../methods';
-import type { Columns, Method, NumberInput, OutputSpec, PreparedMethod, Setting } from '../methods/types';
+import type {
+	Columns,
+	Method,
+	NumberInput,
+	OutputSpec,
+	PreparedMethod,
+	Range,
+	Setting
+} from '../methods/types';
 import { differenceFromSi, fromSi, toSi } from '../quantities/convert';
 import { sameDimension } from '../quantities/parse-unit';
 import type { InputColumn } from '../uncertainty/trial-model';
-import { checkDomain, defaultInput, givenInput, ownUnitOf } from './check-input';
+import { checkDomain, defaultInput, givenInput, isInside, ownUnitOf, rangeInSi } from './check-input';
 import { optionsAt } from './check-options';
 import { isPlainObject, objectAt, own, pointer, quoted, textAt } from './json';
 import { ProblemError } from './problem';
@@ -17,6 +25,8 @@ interface Link {
 	node: Node;
 	output: string;
 	buffer: Record<string, Float64Array>;
+	/** Physical domain of the input, in SI. */
+	domain: Range;
 }
 
 /** One method with its checked inputs; `columns` says which drawn column each input reads. */
@@ -40,6 +50,8 @@ export interface CompiledModel {
 	/** Own unit by column id, for sensitivities. */
 	unitOf: ReadonlyMap<string, string>;
 	evaluate(inputs: Columns, n: number, out: Record<string, Float64Array>): void;
+	/** Flags trials in which a linked input is physically impossible; there only where there are links. */
+	reject?(inputs: Columns, n: number, flags: Uint8Array): void;
 	/** The inputs as the root method's own evaluation reads them. */
 	local(inputs: Columns, n: number): Columns;
 }
@@ -178,7 +190,7 @@ class Compiler {
 			given: true,
 			source: `Output ${output} of ${node.method.id} ${node.method.version}.`
 		};
-		return { link: { input: spec.id, node, output, buffer: {} }, value };
+		return { link: { input: spec.id, node, output, buffer: {}, domain: rangeInSi(spec.domain, own) }, value };
 	}
 
 	private estimates(): Columns {
@@ -227,6 +239,16 @@ function localColumns(node: Node, inputs: Columns, n: number): Columns {
 	return local;
 }
 
+/** Flags the trials in which a linked quantity, at any depth, lies outside its domain. */
+function rejectNode(node: Node, inputs: Columns, n: number, flags: Uint8Array): void {
+	const local = localColumns(node, inputs, n);
+	for (const link of node.links) {
+		rejectNode(link.node, inputs, n, flags);
+		const values = local[link.input] as Float64Array;
+		for (let i = 0; i < n; i++) if (!isInside(values[i] as number, link.domain)) flags[i] = 1;
+	}
+}
+
 function evaluateNode(node: Node, inputs: Columns, n: number, out: Record<string, Float64Array>): void {
 	node.prepared.evaluate(localColumns(node, inputs, n), n, out);
 }
@@ -245,6 +267,9 @@ export function compileModel(method: unknown, inputs: unknown, options: unknown)
 		options: root.setting.options as Options,
 		unitOf: compiler.unitOf,
 		evaluate: (columns, n, out) => evaluateNode(root, columns, n, out),
+		...(root.links.length === 0
+			? {}
+			: { reject: (columns: Columns, n: number, flags: Uint8Array) => rejectNode(root, columns, n, flags) }),
 		local: (columns, n) => localColumns(root, columns, n)
 	};
 }

@@ -14,7 +14,8 @@ export const emissivityAssumedOne: Rule = ({ checked }) => {
 			level: 'note',
 			text: 'The surface is taken as a black body. Rock and soil radiate some 5 % less, which makes them about 1 % warmer on the absolute scale.',
 			figures: { emissivity: 1 },
-			source: 'Stefan-Boltzmann law: the temperature goes with the inverse fourth root of the emissivity.',
+			source:
+				'Stefan-Boltzmann law: the temperature goes with the inverse fourth root of the emissivity. 0.95 for lunar soil: Hayne, P. O. et al. (2017), Journal of Geophysical Research: Planets 122, 2371.',
 			inputs: ['emissivity'],
 			outputs: affected.map(({ id }) => id)
 		}

@@ -26,7 +26,7 @@ export const hotSurface: Rule = ({ checked, outputs }) => {
 			code: 'hot-surface',
 			level: 'caution',
 			text: `The surface may reach ${formatWithUnit(highest, 0, 'degC')}. From about ${formatWithUnit(reached.celsius, 0, 'degC')} skin can burn after a contact ${reached.contact}. The thresholds by contact time and material are those of ISO 13732-1; where people can touch the surface, it and local codes come first, and the decision is for a licensed professional.`,
-			figures: { surfaceTemperature: highest, threshold: reached.celsius },
+			figures: { surfaceCelsius: highest, thresholdCelsius: reached.celsius },
 			source: 'ISO 13732-1:2006.',
 			outputs: ['surfaceTemperature']
 		}

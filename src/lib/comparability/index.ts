@@ -1,6 +1,5 @@
 import type { Caution, CautionLevel } from '../calculation/types';
 import { aboveAirlessBound } from './above-airless-bound';
-import { albedoKind } from './albedo-kind';
 import { areaMismatch } from './area-mismatch';
 import { belowNoStorageBound } from './below-no-storage-bound';
 import type { Rule, RuleContext } from './context';
@@ -28,7 +27,6 @@ const rules: readonly Rule[] = [
 	belowNoStorageBound,
 	nightSideUnsupplied,
 	hotSurface,
-	albedoKind,
 	outsideValidity,
 	differenceUnresolved,
 	linearPropagationDoubtful,

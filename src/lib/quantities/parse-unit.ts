@@ -182,11 +182,19 @@ class UnitReader {
 	}
 }
 
+/** Texts are the users'; the memory of them must not grow without end. */
+const mostKnown = 2000;
 const known = new Map<string, Unit>();
 
 /** Makes a unit that came from elsewhere (the mathjs table) known under its text. */
 export function rememberUnit(text: string, unit: Unit): void {
-	if (known.size < 2000) known.set(text, unit);
+	if (known.size >= mostKnown) {
+		for (const oldest of known.keys()) {
+			known.delete(oldest);
+			break;
+		}
+	}
+	known.set(text, unit);
 }
 
 /**

@@ -8,7 +8,7 @@ import { blockSize, type InputColumn, type TrialModel } from './trial-model';
 
 const mostRedraws = 100_000;
 
-function outside(x: number, { low, high, lowOpen, highOpen }: Range): boolean {
+export function outside(x: number, { low, high, lowOpen, highOpen }: Range): boolean {
 	if (low !== null && (x < low || (lowOpen === true && x === low))) return true;
 	return high !== null && (x > high || (highOpen === true && x === high));
 }
@@ -35,7 +35,12 @@ export class Sampler {
 	private readonly bounded: readonly InputColumn[];
 	private readonly scratch: Float64Array[] = [];
 
-	constructor(model: TrialModel, seed: string) {
+	private readonly flags = new Uint8Array(blockSize);
+
+	constructor(
+		private readonly model: TrialModel,
+		seed: string
+	) {
 		this.seed = sha256Hex(seed);
 		this.groups = correlatedGroups(model.columns, model.correlations);
 		const grouped = new Set(this.groups.flatMap(({ columns }) => columns));
@@ -54,7 +59,7 @@ export class Sampler {
 			n,
 			(id) => this.columns[id] as Float64Array
 		);
-		return this.bounded.length === 0 ? 0 : this.redraw(block, n);
+		return this.bounded.length === 0 && this.model.reject === undefined ? 0 : this.redraw(block, n);
 	}
 
 	private fill(stream: (id: string) => Stream, n: number, target: (id: string) => Float64Array): void {
@@ -80,6 +85,16 @@ export class Sampler {
 		}
 	}
 
+	/** Trials that the model itself finds impossible. */
+	private rejected(columns: Record<string, Float64Array>, n: number): number[] {
+		if (this.model.reject === undefined) return [];
+		this.flags.fill(0, 0, n);
+		this.model.reject(columns, n, this.flags);
+		const trials: number[] = [];
+		for (let i = 0; i < n; i++) if (this.flags[i] === 1) trials.push(i);
+		return trials;
+	}
+
 	/** A trial with any input outside its domain is drawn again as a whole, from one more stream of the block. */
 	private redraw(block: number, n: number): number {
 		const bad = new Set<number>();
@@ -87,22 +102,26 @@ export class Sampler {
 			const column = this.columns[id] as Float64Array;
 			for (let i = 0; i < n; i++) if (outside(column[i] as number, domain)) bad.add(i);
 		}
+		for (const trial of this.rejected(this.columns, n)) bad.add(trial);
 		if (bad.size === 0) return 0;
 		const stream = new Stream(`${this.seed}/redraw/${block}`);
 		const one: Record<string, Float64Array> = {};
-		for (const id of Object.keys(this.columns)) one[id] = new Float64Array(1);
+		for (const { id, value } of this.model.columns) one[id] = Float64Array.of(value);
 		let count = 0;
 		for (const trial of [...bad].sort((a, b) => a - b)) {
-			let failing: InputColumn | undefined;
-			do {
-				if (++count > mostRedraws && failing !== undefined) throw tooOftenOutside(failing);
+			let fits = false;
+			while (!fits) {
+				if (++count > mostRedraws)
+					throw tooOftenOutside(this.bounded[0] ?? (this.model.columns[0] as InputColumn));
 				this.fill(
 					() => stream,
 					1,
 					(id) => one[id] as Float64Array
 				);
-				failing = this.bounded.find(({ id, domain }) => outside(one[id]?.[0] as number, domain));
-			} while (failing !== undefined);
+				fits =
+					!this.bounded.some(({ id, domain }) => outside(one[id]?.[0] as number, domain)) &&
+					this.rejected(one, 1).length === 0;
+			}
 			for (const column of [...this.alone, ...this.groups.flatMap(({ columns }) => columns)]) {
 				(this.columns[column.id] as Float64Array)[trial] = one[column.id]?.[0] as number;
 			}

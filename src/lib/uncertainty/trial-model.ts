@@ -24,6 +24,8 @@ export interface TrialModel {
 	correlations: readonly Correlation[];
 	outputs: readonly string[];
 	evaluate(inputs: Columns, n: number, out: Record<string, Float64Array>): void;
+	/** Flags trials whose intermediate quantities are physically impossible, where there are any to look at. */
+	reject?(inputs: Columns, n: number, flags: Uint8Array): void;
 }
 
 /** The best estimates as columns of one entry. */

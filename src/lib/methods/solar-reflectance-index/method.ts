@@ -14,7 +14,8 @@ function fittedFormOutside({ setting }: CautionContext): Caution[] {
 	const value = (id: string) => setting.values[id] ?? NaN;
 	const absorptance = 1 - value('solarReflectance');
 	const reasons: string[] = [];
-	if (value('irradiance') !== 1000 || value('airTemperature') !== 310 || value('skyTemperature') !== 300) {
+	const differs = (id: string, standard: number) => Math.abs(value(id) - standard) > 1e-9 * standard;
+	if (differs('irradiance', 1000) || differs('airTemperature', 310) || differs('skyTemperature', 300)) {
 		reasons.push('it was fitted at 1000 W m⁻², 310 K air and 300 K sky');
 	}
 	if (absorptance <= 0.1 || (absorptance > 0.8 && value('thermalEmittance') < 0.2)) {
@@ -46,7 +47,7 @@ export const solarReflectanceIndex: Method = {
 	answers:
 		'How cool a roof or paving stays in the Sun, between a standard black and a standard white surface.',
 	averages:
-		'It describes one flat, insulated surface under the Sun of the standard, at one moment; it is no forecast for a place or a day.',
+		'It describes one flat, insulated surface under the Sun of the standard, at one moment; it is no forecast for a place or a day. The constants are those of the standard, among them 5.66961 × 10⁻⁸ W m⁻² K⁻⁴.',
 	leavesOut: [
 		'Heat conducted into the roof or the ground: the surface is taken as insulated behind.',
 		'Storage of heat, rain, dew, shade and the slope of the surface.',
@@ -64,7 +65,7 @@ export const solarReflectanceIndex: Method = {
 	citations: [
 		{
 			id: 'astm-e1980',
-			text: 'ASTM International (2011): ASTM E1980-11, Standard Practice for Calculating Solar Reflectance Index of Horizontal and Low-Sloped Opaque Surfaces. West Conshohocken, PA. Constants of the standard throughout, among them 5.66961e-8 W m⁻² K⁻⁴.',
+			text: 'ASTM International (2011): ASTM E1980-11, Standard Practice for Calculating Solar Reflectance Index of Horizontal and Low-Sloped Opaque Surfaces. West Conshohocken, PA.',
 			doi: '10.1520/E1980-11'
 		}
 	],

@@ -1,6 +1,7 @@
 import { codata, iauB3, nominalSolarIrradiance } from '../constants';
 import { irradiancePeriodOption, withPeriod } from '../irradiance-period';
 import type { Method } from '../types';
+import { albedoKind } from './albedo-kind';
 import { equations } from './equations';
 import { figures } from './figures';
 import { outputs } from './outputs';
@@ -113,6 +114,6 @@ export const sunlitEquilibrium: Method = {
 			series: families(setting)
 		};
 	},
-	cautions: () => [],
+	cautions: albedoKind,
 	history: [{ version: '1.0.0', date: '2026-12-01', change: 'First version.' }]
 };

@@ -1,11 +1,11 @@
-import { nominalSolarIrradiance } from '../methods/constants';
-import type { Rule } from './context';
+import type { Caution } from '../../calculation/types';
+import { nominalSolarIrradiance } from '../constants';
+import type { CautionContext } from '../types';
 
 /** The Earth's albedo, clouds and all, given to a method for a body without an atmosphere. */
-export const albedoKind: Rule = ({ checked }) => {
-	const { method, setting } = checked.model;
+export function albedoKind({ setting }: CautionContext): Caution[] {
 	const { bondAlbedo, irradiance } = setting.values;
-	if (method.id !== 'sunlit-equilibrium' || bondAlbedo === undefined || irradiance === undefined) return [];
+	if (bondAlbedo === undefined || irradiance === undefined) return [];
 	const nearEarth = Math.abs(irradiance - nominalSolarIrradiance) <= 15;
 	if (!nearEarth || bondAlbedo < 0.28 || bondAlbedo > 0.32) return [];
 	return [
@@ -18,4 +18,4 @@ export const albedoKind: Rule = ({ checked }) => {
 			inputs: ['bondAlbedo']
 		}
 	];
-};
+}
