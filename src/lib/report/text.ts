@@ -12,6 +12,8 @@ export interface ReportText {
 	leftOut: string;
 	/** Who paid for or asked for the work, if it is to be said. */
 	commissionedBy: string;
+	/** Said outright: there is no addressee. */
+	withoutAddressee: boolean;
 }
 
 export const emptyReportText: ReportText = {
@@ -20,5 +22,6 @@ export const emptyReportText: ReportText = {
 	answer: '',
 	commentary: '',
 	leftOut: '',
-	commissionedBy: ''
+	commissionedBy: '',
+	withoutAddressee: false
 };

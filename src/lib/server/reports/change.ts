@@ -26,7 +26,8 @@ const change = z.strictObject({
 		answer: long,
 		commentary: long,
 		leftOut: long,
-		commissionedBy: long
+		commissionedBy: long,
+		withoutAddressee: z.boolean().default(false)
 	}),
 	runIds: z.array(z.uuid()).max(20, 'A report shows at most 20 results.'),
 	baseVersion: z.int().positive()

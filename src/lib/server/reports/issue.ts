@@ -12,7 +12,7 @@ import { enqueue } from '../jobs/queue';
 import { ensureOrganisationCertificate, rootPem } from '../signing/authority';
 import { newCode } from './code';
 import { getReport, type ReportView } from './load';
-import { modelOf } from './model';
+import { modelOf, requirePrintable } from './model';
 
 export interface IssueView {
 	id: string;
@@ -131,6 +131,7 @@ export async function issueReport(
 			},
 			tx
 		);
+		requirePrintable(model);
 		const unmet = unmetDuties(model);
 		if (unmet.length > 0) {
 			throw new InvalidInputError(

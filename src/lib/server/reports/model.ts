@@ -6,6 +6,7 @@ import type { Membership } from '../access/membership';
 import type { Queryable } from '../db';
 import { evidence, organisations, users } from '../db/schema';
 import { runsOf, type ReportView } from './load';
+import { unprintableText } from './render/printable';
 
 interface Circumstances {
 	/** Null in a preview: nothing can be verified yet. */
@@ -76,7 +77,12 @@ export async function modelOf(
 			title: report.title,
 			text: report.text
 		},
-		addressee: dossier.client.trim() === '' ? null : { name: dossier.client, contact: dossier.clientContact },
+		addressee:
+			dossier.client.trim() !== ''
+				? { name: dossier.client, contact: dossier.clientContact }
+				: report.text.withoutAddressee
+					? 'none'
+					: null,
 		scope: dossier.scope,
 		reliance: dossier.reliance,
 		projectNumber: dossier.projectNumber,
@@ -113,4 +119,13 @@ export async function modelOf(
 		temperatureUnit: loaded[0]?.run.draft.temperatureUnit ?? 'degC'
 	};
 	return buildReportModel(source, { methodOf: methodById });
+}
+
+/**
+ * Refuses what the document's typefaces cannot print, while the author is still there to mend it.
+ * @throws InvalidInputError that names the character
+ */
+export function requirePrintable(model: ReportModel): void {
+	const fault = unprintableText(model);
+	if (fault !== null) throw new InvalidInputError(fault.message, { form: fault.message });
 }

@@ -6,7 +6,7 @@ import { database, type Database, type Queryable } from '../db';
 import { previews } from '../db/schema';
 import { enqueue } from '../jobs/queue';
 import { getReport } from './load';
-import { modelOf } from './model';
+import { modelOf, requirePrintable } from './model';
 
 export interface PreviewView {
 	id: string;
@@ -31,6 +31,7 @@ export async function requestPreview(
 		{ verification: null, issueDate: null, authoriser: null },
 		db
 	);
+	requirePrintable(model);
 	return db.transaction(async (tx) => {
 		const [same] = await tx
 			.select({ id: previews.id })

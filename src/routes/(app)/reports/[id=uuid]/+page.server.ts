@@ -36,7 +36,8 @@ function changeFrom(form: FormData): unknown {
 			answer: field('answer'),
 			commentary: field('commentary'),
 			leftOut: field('leftOut'),
-			commissionedBy: field('commissionedBy')
+			commissionedBy: field('commissionedBy'),
+			withoutAddressee: form.get('withoutAddressee') === 'yes'
 		},
 		runIds: form.getAll('runIds').map(String),
 		baseVersion: Number(form.get('version'))
