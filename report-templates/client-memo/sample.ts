@@ -309,7 +309,8 @@ const strain: Sample = async (context) =>
 					'An answer in the author’s own words: the surface conforms, by a margin that the rule allows.',
 				commentary: `${'An opinion, at length and with √2, ∑ and ∫ in it. '.repeat(14)}`,
 				leftOut: 'Dust, birds, moss & lichens; the wind’s gusts; “everything else”.',
-				commissionedBy: 'Somebody & Co.'
+				commissionedBy: 'Somebody & Co.',
+				withoutAddressee: false
 			}
 		},
 		scope: `${'The scope is given at length. '.repeat(8)}`,

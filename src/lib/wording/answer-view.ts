@@ -2,12 +2,15 @@ import type { CalculationDraft } from '../calculation/draft';
 import { primaryOutput } from '../calculation/new-draft';
 import type { Caution, CautionLevel, ComputeResult } from '../calculation/types';
 import type { Method, OutputSpec } from '../methods/types';
+import { averagesSentence } from './answer';
 import { presentOutput } from './present';
 
 /** The running answer beside the form, as words and printed numbers; plain JSON. */
 export interface AnswerView {
 	/** What is averaged: "Mean over the sunlit side". */
 	label: string;
+	/** "An average over the sunlit hemisphere, at one instant." */
+	averages: string;
 	value?: string;
 	/** "standard uncertainty 0.9 K" */
 	spread?: string;
@@ -41,7 +44,15 @@ export function emptyAnswer(
 	method: Method,
 	faults: Record<string, string>
 ): AnswerView {
-	return { label: answeredOutput(draft, method).label, others: [], shares: {}, cautions: 0, faults };
+	const asked = answeredOutput(draft, method);
+	return {
+		label: asked.label,
+		averages: averagesSentence(asked, { scale: draft.temperatureUnit }),
+		others: [],
+		shares: {},
+		cautions: 0,
+		faults
+	};
 }
 
 /** A computed result as the running answer shows it. */
@@ -60,9 +71,13 @@ export function answerView(draft: CalculationDraft, method: Method, result: Comp
 			.find((name) => name !== undefined);
 		return missing === undefined ? [] : [{ label: output.label, value: `needs the ${missing}` }];
 	});
-	const gravest = [...result.cautions].sort((a, b) => gravity[b.level] - gravity[a.level])[0];
+	// That first order is a rough guide matters least beside an interval that does not rest on it.
+	const weight = ({ code, level }: Caution) =>
+		gravity[level] - (code === 'linear-propagation-doubtful' ? 0.5 : 0);
+	const gravest = [...result.cautions].sort((a, b) => weight(b) - weight(a))[0];
 	const rest = {
 		label: asked.label,
+		averages: averagesSentence(asked, { scale }),
 		others,
 		cautions: result.cautions.length,
 		faults: {},

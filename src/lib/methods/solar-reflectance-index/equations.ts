@@ -1,6 +1,19 @@
-import type { Equation } from '../types';
+import { texNumber, texWithUnit } from '../../quantities';
+import type { Equation, EquationNumbers } from '../types';
+import { blackReflectance, referenceEmittance, solveBalance, whiteReflectance } from './solve';
 
 const sigma = '5.66961\\times 10^{-8}\\,\\mathrm{W}\\,\\mathrm{m}^{-2}\\,\\mathrm{K}^{-4}';
+
+/** Temperature of a reference surface in the same surroundings, written with its unit. */
+function reference(n: EquationNumbers, reflectance: number): string | undefined {
+	const sun = n.value('irradiance');
+	const sky = n.value('skyTemperature');
+	const air = n.value('airTemperature');
+	const h = n.value('convectionCoefficient');
+	if (sun === undefined || sky === undefined || air === undefined || h === undefined) return undefined;
+	const kelvin = solveBalance((1 - reflectance) * sun, referenceEmittance, sky, air, h);
+	return texWithUnit(texNumber(kelvin, 1), 'K');
+}
 
 export const equations: readonly Equation[] = [
 	{
@@ -18,8 +31,12 @@ export const equations: readonly Equation[] = [
 		id: 'index',
 		title: 'Index between the black and the white reference surface',
 		tex: '\\mathrm{SRI} = 100\\,\\frac{T_\\mathrm{b} - T_\\mathrm{s}}{T_\\mathrm{b} - T_\\mathrm{w}}',
-		put: (n) =>
-			`\\mathrm{SRI} = 100\\,\\frac{T_\\mathrm{b} - ${n.output('surfaceTemperature')}}{T_\\mathrm{b} - T_\\mathrm{w}} = ${n.output('solarReflectanceIndex')}`,
+		put: (n) => {
+			const black = reference(n, blackReflectance);
+			const white = reference(n, whiteReflectance);
+			if (black === undefined || white === undefined) return undefined;
+			return `\\mathrm{SRI} = 100\\,\\frac{${black} - ${n.output('surfaceTemperature')}}{${black} - ${white}} = ${n.output('solarReflectanceIndex')}`;
+		},
 		spoken:
 			'The solar reflectance index is one hundred times the black minus the surface temperature over the black minus the white temperature.',
 		citation: 'astm-e1980',

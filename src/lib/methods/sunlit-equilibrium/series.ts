@@ -27,7 +27,8 @@ export function families(setting: Setting): Record<string, CurveFamily> {
 	const night = setting.has('nightTemperature');
 	const scratch = new Scratch(night ? [...always, ...withNight] : always);
 	const curves = night ? [...means, ...wholeSphereMeans] : means;
-	const angles = evenly(0, 90, 37);
+	// Closer towards the edge, where the fourth root of the cosine falls steeply.
+	const angles = [...evenly(0, 84, 29), ...evenly(84.5, 89.5, 11), ...evenly(89.75, 90, 2)];
 	const albedos = evenly(0, 0.9, 37);
 	// The distance at which the nominal Sun gives the stated irradiance; the curve scales around it.
 	const distance = Math.sqrt(nominalSolarIrradiance / (setting.values.irradiance ?? nominalSolarIrradiance));
