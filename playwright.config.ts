@@ -1,4 +1,5 @@
 import { defineConfig } from '@playwright/test';
+import { browserLaunch } from './scripts/lib/browser.mjs';
 
 /* `npm test -- browser` starts the whole service and says here where it is. */
 const address = process.env.E2E_ADDRESS;
@@ -22,17 +23,6 @@ export default defineConfig({
 		timezoneId: 'UTC',
 		screenshot: 'only-on-failure',
 		trace: 'retain-on-failure',
-		launchOptions: {
-			executablePath: process.env.CHROMIUM ?? '/usr/bin/chromium',
-			args: [
-				'--no-sandbox',
-				'--disable-gpu',
-				'--disable-quic',
-				'--no-first-run',
-				'--disable-background-networking',
-				'--disable-component-update',
-				'--disable-sync'
-			]
-		}
+		launchOptions: browserLaunch
 	}
 });

@@ -1,0 +1,203 @@
+import { randomUUID } from 'node:crypto';
+
+/*
+ * Signs three people in and finds, or makes, what the screens show: the demo's work, one draft with a preview, and a
+ * newcomer who has no organisation yet. Used by the pictures and by the tests that visit every screen.
+ */
+
+/** @typedef {import('@playwright/test').Browser} Browser */
+/** @typedef {import('@playwright/test').Page} Page */
+/** @typedef {import('./service.mjs').SignIn} SignIn */
+/** @typedef {'nobody' | 'newcomer' | 'founder' | 'consultant' | 'reporter'} Who */
+/** @typedef {Awaited<ReturnType<import('@playwright/test').BrowserContext['storageState']>>} StoredState */
+
+/**
+ * @typedef {object} Places
+ * @property {Record<Who, StoredState | undefined>} states signed-in browsers
+ * @property {string} address
+ * @property {string} dossier of the consultant, with calculations and an issued report
+ * @property {string} limit calculation of the consultant, computed: a limit
+ * @property {string} value calculation of the consultant, computed: a value
+ * @property {string} unfinished calculation of the consultant
+ * @property {string} claim calculation of the reporter, computed: a claim
+ * @property {string} draft report of the consultant
+ * @property {string} preview of that draft, done
+ * @property {string} issued report of the consultant
+ * @property {string} code of the issued report
+ * @property {Buffer} pdf of the issued report
+ * @property {string} confirmLink of a person who has not confirmed yet
+ * @property {string} resetLink of that person's
+ */
+
+/** @param {Page} page Script has taken over the page's forms, and every first answer is in. */
+export async function settled(page) {
+	await page.waitForLoadState('networkidle');
+}
+
+/** @param {Page} page @param {string} path */
+export async function visit(page, path) {
+	await page.goto(path);
+	await settled(page);
+}
+
+/** @param {Page} page @param {{ email: string, password: string }} person */
+async function signIn(page, { email, password }) {
+	await visit(page, '/sign-in');
+	await page.getByLabel('E-mail').fill(email);
+	await page.getByLabel('Password', { exact: true }).fill(password);
+	await page.getByRole('main').getByRole('button', { name: 'Sign in' }).click();
+	await page.waitForURL(/\/dossiers/);
+}
+
+/** @param {Page} page a list @param {string} path @param {string} title @returns {Promise<string>} address */
+async function linkIn(page, path, title) {
+	await visit(page, path);
+	const href = await page.getByRole('main').getByRole('link', { name: title }).first().getAttribute('href');
+	if (href === null) throw new Error(`${path} has no link “${title}”.`);
+	return href.replace(/\/(question|check|result)$/, '');
+}
+
+/**
+ * @param {string} mailReader
+ * @param {string} to
+ * @param {string} part of the link
+ */
+async function linkInMail(mailReader, to, part) {
+	const from = new URL(`messages?to=${encodeURIComponent(to)}`, mailReader);
+	for (let i = 0; i < 100; i += 1) {
+		/** @type {{ links: string[] }[]} */
+		const mails = await (await fetch(from)).json();
+		const link = mails.flatMap(({ links }) => links).find((one) => one.includes(part));
+		if (link !== undefined) return new URL(link).pathname;
+		await new Promise((resolve) => setTimeout(resolve, 200));
+	}
+	throw new Error(`No mail to ${to} with a link to ${part}.`);
+}
+
+/** @param {Page} page @param {string} email @param {string} password */
+async function signUp(page, email, password) {
+	await visit(page, '/sign-up');
+	await page.getByLabel('Your name').fill('Runa Aldous');
+	await page.getByLabel('E-mail address').fill(email);
+	await page.getByLabel('Password', { exact: true }).fill(password);
+	await page.getByRole('main').getByRole('button', { name: 'Make the account' }).click();
+	await page.waitForURL(/\/sign-up\/confirm/);
+}
+
+/**
+ * A person with a confirmed account and no organisation, and the links of one who has not confirmed.
+ * @param {Page} page
+ * @param {string} mailReader
+ */
+async function newcomer(page, mailReader) {
+	const password = randomUUID();
+	const name = () => `runa.aldous.${randomUUID().slice(0, 8)}@example.org`;
+	const waiting = name();
+	await signUp(page, waiting, password);
+	const confirmLink = await linkInMail(mailReader, waiting, '/confirm/');
+	const confirmed = name();
+	await signUp(page, confirmed, password);
+	await visit(page, await linkInMail(mailReader, confirmed, '/confirm/'));
+	await page.getByLabel('Password', { exact: true }).fill(password);
+	await page.getByRole('main').getByRole('button', { name: 'Confirm and sign in' }).click();
+	await page.waitForURL(/\/organisation\/new/);
+	const state = await page.context().storageState();
+	await page.context().clearCookies();
+	await visit(page, '/reset');
+	await page.getByLabel('E-mail address').fill(waiting);
+	await page.getByRole('button', { name: 'Send the link' }).click();
+	await page.getByRole('heading', { name: 'Look into your mailbox' }).waitFor();
+	const resetLink = await linkInMail(mailReader, waiting, '/reset/');
+	return { state, confirmLink, resetLink };
+}
+
+/** @param {Page} page newcomer signed in @returns {Promise<StoredState>} with an organisation that has no work */
+async function found(page) {
+	await visit(page, '/organisation/new');
+	await page.getByLabel('Name of the organisation').fill('Aldous Surveys');
+	await page.getByLabel('Letters before report numbers').fill('AS');
+	await page.getByRole('main').getByRole('button').click();
+	await page.waitForURL(/\/dossiers/);
+	return await page.context().storageState();
+}
+
+/** The address of the consultant's draft, made where there is none. @param {Page} page @param {string} dossier */
+async function draftReport(page, dossier) {
+	await visit(page, '/reports?state=draft');
+	const known = page.getByRole('rowheader').getByRole('link').first();
+	if ((await known.count()) > 0) return /** @type {string} */ (await known.getAttribute('href'));
+	await visit(page, `${dossier}/reports/new`);
+	await page.getByRole('button', { name: 'Make a draft' }).click();
+	await page.waitForURL(/\/reports\/[0-9a-f-]{36}$/);
+	return new URL(page.url()).pathname;
+}
+
+/** @param {Page} page signed in as the consultant */
+async function consultantsWork(page) {
+	const limit = await linkIn(page, '/calculations', 'Coated sheet, aged three years');
+	const value = await linkIn(page, '/calculations', 'Sunlit side, local balance');
+	const unfinished = await linkIn(page, '/calculations', 'Dark patch, half filled in');
+	const dossier = await linkIn(page, '/dossiers', 'Roof surfaces, Marrow Coast');
+	const issued = await linkIn(page, '/reports', 'Coated roof sheet');
+	await visit(page, issued);
+	const download = page.getByRole('link', { name: 'Download the signed PDF' });
+	await download.waitFor({ timeout: 60_000 });
+	const pdf = await (await page.request.get(`${issued}/file.pdf`)).body();
+	const code = (await page.locator('a[href^="/verify/"] .mono').first().textContent()) ?? '';
+	const draft = await draftReport(page, dossier);
+	await visit(page, draft);
+	await page.getByRole('button', { name: 'Save and preview' }).click();
+	await page.getByRole('link', { name: 'Open the preview' }).waitFor({ timeout: 60_000 });
+	const preview = new URL(page.url()).pathname;
+	return { dossier, limit, value, unfinished, issued, code, pdf, draft, preview };
+}
+
+/**
+ * @param {Browser} browser
+ * @param {{ address: string, mailReader: string, signIns: SignIn[] }} service
+ * @returns {Promise<Places>}
+ */
+export async function prepareScreens(browser, { address, mailReader, signIns }) {
+	/** @template T @param {(page: Page) => Promise<T>} work @param {StoredState} [storageState] */
+	const inBrowser = async (work, storageState) => {
+		const context = await browser.newContext({ baseURL: address, storageState });
+		try {
+			return await work(await context.newPage());
+		} finally {
+			await context.close();
+		}
+	};
+	/** @param {string} organisation */
+	const founderOf = (organisation) => {
+		const person = signIns.find((one) => one.organisation === organisation);
+		if (person === undefined) throw new Error(`The demo has nobody in ${organisation}.`);
+		return person;
+	};
+	const fresh = await inBrowser((page) => newcomer(page, mailReader));
+	const founder = await inBrowser((page) => found(page), fresh.state);
+	const consultant = await inBrowser(async (page) => {
+		await signIn(page, founderOf('Tallis Brook Consulting'));
+		return { work: await consultantsWork(page), state: await page.context().storageState() };
+	});
+	const reporter = await inBrowser(async (page) => {
+		await signIn(page, founderOf('The Ferrow Courier'));
+		const claim = await linkIn(page, '/calculations', 'The 38 degC of the notice');
+		return { claim, state: await page.context().storageState() };
+	});
+	// Founding an organisation made the newcomer's own session its member, so another newcomer stays without one.
+	const without = await inBrowser((page) => newcomer(page, mailReader));
+	return {
+		address,
+		...consultant.work,
+		claim: reporter.claim,
+		confirmLink: without.confirmLink,
+		resetLink: without.resetLink,
+		states: {
+			nobody: undefined,
+			newcomer: without.state,
+			founder,
+			consultant: consultant.state,
+			reporter: reporter.state
+		}
+	};
+}
