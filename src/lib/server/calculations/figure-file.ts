@@ -1,9 +1,9 @@
-import { figureSpec, seriesCsv } from '$lib/figures';
+import { seriesCsv } from '$lib/figures';
 import { requireAction } from '../access/can';
 import { NotFoundError } from '../access/errors';
 import type { Membership } from '../access/membership';
 import { database, type Queryable } from '../db';
-import { drawForDownload, measureFigureText } from '../figures/draw';
+import { drawRowForDownload } from '../figures/of-row';
 import { getCalculation } from './load';
 import { runModel } from './result-view';
 import { getRun } from './runs';
@@ -31,16 +31,8 @@ export async function figureFile(
 	if (extension === 'csv') {
 		return { body: seriesCsv(figure.series), type: 'text/csv; charset=utf-8', name: `${figure.id}.csv` };
 	}
-	const spec = figureSpec(figure.series, {
-		width: 720,
-		height: 320,
-		measure: measureFigureText,
-		...(figure.yName === null ? {} : { yName: figure.yName }),
-		...(figure.stated === null ? {} : { stated: figure.stated }),
-		...(figure.assumed === null ? {} : { assumed: figure.assumed })
-	});
 	return {
-		body: await drawForDownload(spec, figure.finding),
+		body: await drawRowForDownload(figure),
 		type: 'image/svg+xml',
 		name: `${figure.id}.svg`
 	};

@@ -1,24 +1,16 @@
 import { methodById } from '$lib/methods';
 import type { Citation } from '$lib/methods/types';
-import { figureSpec, figureTable, type FigureColumn } from '$lib/figures';
 import { buildRun } from '$lib/report/build';
 import { SourceList } from '$lib/report/assumptions';
-import type { FigureRow, RunModel } from '$lib/report/model';
+import type { RunModel } from '$lib/report/model';
 import { wordingCitations } from '$lib/wording';
 import type { Membership } from '../access/membership';
 import { database, type Queryable } from '../db';
 import { texToMathml } from '../equations/mathml';
 import { listEvidence } from '../evidence/list';
-import { drawForPage, measureFigureText } from '../figures/draw';
+import { drawRow, type DrawnFigure } from '../figures/of-row';
 import type { CalculationView } from './load';
 import type { RunView } from './runs';
-
-export interface ResultFigure {
-	id: string;
-	svg: string;
-	finding: string;
-	table: FigureColumn[];
-}
 
 export interface ResultEquation {
 	id: string;
@@ -32,30 +24,11 @@ export interface ResultEquation {
 /** A finished run as the result page shows it: worded and rounded as the report prints it. */
 export interface ResultView {
 	run: Omit<RunModel, 'request' | 'result' | 'figures' | 'equations'>;
-	figures: ResultFigure[];
+	figures: DrawnFigure[];
 	equations: ResultEquation[];
 	references: Citation[];
 	trials: number | null;
 	seed: string | null;
-}
-
-const width = 620;
-
-async function drawn(figure: FigureRow): Promise<ResultFigure> {
-	const spec = figureSpec(figure.series, {
-		width,
-		height: 250,
-		measure: measureFigureText,
-		...(figure.yName === null ? {} : { yName: figure.yName }),
-		...(figure.stated === null ? {} : { stated: figure.stated }),
-		...(figure.assumed === null ? {} : { assumed: figure.assumed })
-	});
-	return {
-		id: figure.id,
-		svg: await drawForPage(spec, figure.finding),
-		finding: figure.finding,
-		table: figureTable(figure.series)
-	};
 }
 
 /** The run's model with its figures, for the download of one figure. */
@@ -102,8 +75,8 @@ export async function resultView(
 	return {
 		run: rest,
 		// One after the other: the drawing library numbers its parts in one count per process.
-		figures: await figures.reduce<Promise<ResultFigure[]>>(
-			async (before, figure) => [...(await before), await drawn(figure)],
+		figures: await figures.reduce<Promise<DrawnFigure[]>>(
+			async (before, figure) => [...(await before), await drawRow(figure)],
 			Promise.resolve([])
 		),
 		equations: equations.map(({ id, title, tex, put, citation }) => ({
