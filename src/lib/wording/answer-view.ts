@@ -60,17 +60,26 @@ export function answerView(draft: CalculationDraft, method: Method, result: Comp
 	const asked = answeredOutput(draft, method);
 	const scale = draft.temperatureUnit;
 	const main = result.outputs[asked.id];
-	const others = method.outputs.flatMap((output) => {
-		if (output.id === asked.id) return [];
+	const beside = method.outputs.filter(({ id }) => id !== asked.id);
+	const others = beside.flatMap((output) => {
 		const computed = result.outputs[output.id];
-		if (computed !== undefined) {
-			return [{ label: output.label, value: presentOutput(computed, output, scale).estimate }];
-		}
-		const missing = (output.needs ?? [])
-			.map((id) => method.inputs.find((input) => input.id === id)?.name)
-			.find((name) => name !== undefined);
-		return missing === undefined ? [] : [{ label: output.label, value: `needs the ${missing}` }];
+		return computed === undefined
+			? []
+			: [{ label: output.label, value: presentOutput(computed, output, scale).estimate }];
 	});
+	// Outputs that wait for the same input are one line.
+	const waiting = new Map<string, string[]>();
+	for (const output of beside) {
+		const missing = method.inputs.find(({ id }) => output.needs?.includes(id) === true)?.name;
+		if (result.outputs[output.id] !== undefined || missing === undefined) continue;
+		waiting.set(missing, [...(waiting.get(missing) ?? []), output.label]);
+	}
+	for (const [missing, [first = '', ...more]] of waiting) {
+		others.push({
+			label: more.length === 0 ? first : `${first} and ${more.length} more`,
+			value: `needs the ${missing}`
+		});
+	}
 	// That first order is a rough guide matters least beside an interval that does not rest on it.
 	const weight = ({ code, level }: Caution) =>
 		gravity[level] - (code === 'linear-propagation-doubtful' ? 0.5 : 0);
