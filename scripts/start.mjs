@@ -4,7 +4,7 @@ import { ensureDependencies, requireNode } from './lib/dependencies.mjs';
 import { takeLock } from './lib/lock.mjs';
 import { ensurePackages, packagesToRun } from './lib/packages.mjs';
 import { dataFolder, ensureFolder } from './lib/paths.mjs';
-import { PlainError } from './lib/plain-error.mjs';
+import { explain, PlainError } from './lib/plain-error.mjs';
 import { portFor, webPort } from './lib/ports.mjs';
 import { clusterFolder, startCluster, stopCluster } from './lib/postgres.mjs';
 import { endRunning } from './lib/run.mjs';
@@ -35,7 +35,7 @@ async function stopAll(code, reason) {
 	endRunning();
 	for (const stop of toStop.reverse()) {
 		await stop().catch((error) => {
-			console.error(error instanceof PlainError ? error.message : error);
+			console.error(explain(error));
 			code = 1;
 		});
 	}
@@ -80,8 +80,9 @@ async function main() {
 	const ownDatabase = givenDatabase === undefined || givenDatabase === '';
 	if (ownDatabase) await ensurePackages(packagesToRun, say);
 	await ensureDependencies(say);
+	const web = await webPort(process.env.PORT);
 	const ports = {
-		web: await webPort(process.env.PORT),
+		web: web.port,
 		smtp: await portFor('SMTP_PORT', process.env.SMTP_PORT),
 		mail: await portFor('MAIL_READER_PORT', process.env.MAIL_READER_PORT)
 	};
@@ -107,6 +108,7 @@ async function main() {
 		secrets,
 		ports,
 		folder: dataFolder,
+		releaseWebPort: web.release,
 		dev,
 		say,
 		onStop: (stop) => void toStop.push(stop)
@@ -122,5 +124,5 @@ for (const signal of /** @type {const} */ (['SIGINT', 'SIGTERM', 'SIGHUP'])) {
 
 main().catch((error) => {
 	// A stop in the middle of the set-up breaks what was going on; that is no fault.
-	if (!stopping) void stopAll(1, error instanceof PlainError ? error.message : String(error.stack ?? error));
+	if (!stopping) void stopAll(1, explain(error));
 });

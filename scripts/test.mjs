@@ -4,7 +4,7 @@ import { ensureDependencies, requireNode } from './lib/dependencies.mjs';
 import { holderOf, takeLock } from './lib/lock.mjs';
 import { ensurePackages, packagesToTest } from './lib/packages.mjs';
 import { dataFolder, ensureFolder } from './lib/paths.mjs';
-import { PlainError } from './lib/plain-error.mjs';
+import { explain, PlainError } from './lib/plain-error.mjs';
 import { endRunning } from './lib/run.mjs';
 import { checkStage, playwrightStage, programs, vitestStage } from './lib/stages.mjs';
 import { cleanEnvironment, startDatabase, startForBrowser } from './lib/throw-away-service.mjs';
@@ -120,7 +120,7 @@ async function main(wanted) {
 			env,
 			reports
 		}).catch((error) => {
-			console.error(error instanceof PlainError ? error.message : error);
+			console.error(explain(error));
 			return { passed: 0, failed: 1 };
 		});
 		total.passed += count.passed;
@@ -144,7 +144,7 @@ for (const signal of /** @type {const} */ (['SIGINT', 'SIGTERM', 'SIGHUP'])) {
 
 main(process.argv.slice(2)).catch(async (error) => {
 	if (ending) return;
-	console.error(error instanceof PlainError ? error.message : error);
+	console.error(explain(error));
 	await end(1);
 	console.log('0 passed, 1 failed');
 });

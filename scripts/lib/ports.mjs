@@ -7,18 +7,30 @@ import { PlainError } from './plain-error.mjs';
 const loopback = '127.0.0.1';
 
 /**
+ * Listens on a port, so that nobody else takes it until it is needed.
  * @param {number} port 0 for any
- * @returns {Promise<number | undefined>} the port, once it was opened and closed again; undefined where it is taken
+ * @returns {Promise<{ port: number, release: () => Promise<void> } | undefined>} undefined where it is taken
  */
-function tryPort(port) {
+function holdPort(port) {
 	return new Promise((resolve) => {
-		const server = createServer();
+		const server = createServer((socket) => socket.destroy());
 		server.once('error', () => resolve(undefined));
 		server.listen({ port, host: loopback, exclusive: true }, () => {
 			const address = server.address();
-			server.close(() => resolve(typeof address === 'object' && address !== null ? address.port : undefined));
+			server.unref();
+			resolve({
+				port: typeof address === 'object' && address !== null ? address.port : port,
+				release: () => new Promise((released) => server.close(() => released()))
+			});
 		});
 	});
+}
+
+/** @param {number} port 0 for any @returns {Promise<number | undefined>} undefined where it is taken */
+async function tryPort(port) {
+	const held = await holdPort(port);
+	await held?.release();
+	return held?.port;
 }
 
 /** @param {number} port */
@@ -73,11 +85,18 @@ async function givenPort(name, given) {
 	return port;
 }
 
-/** The web server's port: `PORT`, or 3000, or the next one that is free. @param {string | undefined} given */
+/**
+ * The web server's port, `PORT` or 3000 or the next one that is free; held, so that two copies that start at the same
+ * time choose different ones.
+ * @param {string | undefined} given
+ * @returns {Promise<{ port: number, release: () => Promise<void> }>}
+ */
 export async function webPort(given) {
-	if (given !== undefined && given !== '') return await givenPort('PORT', given);
-	for (let port = 3000; port < 3200; port += 1) {
-		if (await isFree(port)) return port;
+	const from = given === undefined || given === '' ? 3000 : await givenPort('PORT', given);
+	const to = given === undefined || given === '' ? from + 199 : from;
+	for (let port = from; port <= to; port += 1) {
+		const held = await holdPort(port);
+		if (held !== undefined) return held;
 	}
-	return await freePort();
+	throw new PlainError(`No port from ${from} to ${to} is free. Give another one as PORT.`);
 }

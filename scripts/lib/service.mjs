@@ -10,6 +10,7 @@ import { run } from './run.mjs';
  * @property {string} databaseUrl
  * @property {import('./secrets.mjs').Secrets} secrets
  * @property {{ web: number, smtp: number, mail: number }} ports
+ * @property {() => Promise<void>} [releaseWebPort] called just before the web server takes its port
  * @property {string} folder for logs and mails
  * @property {NodeJS.ProcessEnv} [inherited] the caller's environment, of `process` unless given
  * @property {boolean} [dev] Vite's development server instead of the build
@@ -122,6 +123,7 @@ export async function startService(options) {
 	say('Starting …');
 	const vite = join(root, 'node_modules', 'vite', 'bin', 'vite.js');
 	const address = `http://127.0.0.1:${ports.web}`;
+	await options.releaseWebPort?.();
 	start(
 		'web',
 		dev
