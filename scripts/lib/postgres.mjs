@@ -1,6 +1,7 @@
 import { randomBytes } from 'node:crypto';
 import {
 	appendFileSync,
+	chmodSync,
 	chownSync,
 	existsSync,
 	mkdirSync,
@@ -74,7 +75,10 @@ export function clusterFolder(say) {
 /** A folder for a cluster that lives as long as a test run. @param {string} [above] */
 export function throwAwayFolder(above = tmpdir()) {
 	const usable = canReach(above) ? above : '/var/lib';
-	return join(mkdtempSync(join(usable, 'noonmark-test-')), 'postgres');
+	const folder = mkdtempSync(join(usable, 'noonmark-test-'));
+	// A temporary folder is made closed to all others; the database's user has to pass through it, not to read it.
+	chmodSync(folder, 0o711);
+	return join(folder, 'postgres');
 }
 
 /**
