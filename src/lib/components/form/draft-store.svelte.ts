@@ -42,6 +42,13 @@ export class DraftStore {
 		this.message = '';
 	}
 
+	/** The server holds a newer version: nothing is saved any more until the page is loaded anew. */
+	refuse(message: string): void {
+		clearTimeout(this.#timer);
+		this.status = 'conflict';
+		this.message = message;
+	}
+
 	/** A form's own submit saves everything: no autosave may run beside it. */
 	hold(): Promise<void> {
 		clearTimeout(this.#timer);
