@@ -15,7 +15,12 @@ export default defineConfig({
 				test: {
 					name: 'unit',
 					environment: 'node',
-					include: ['src/**/*.test.ts', 'report-templates/**/*.test.ts', 'tests/published/**/*.test.ts'],
+					include: [
+						'src/**/*.test.ts',
+						'report-templates/**/*.test.ts',
+						'tests/published/**/*.test.ts',
+						'tests/docs/**/*.test.ts'
+					],
 					exclude: ['src/**/*.db.test.ts', 'src/**/*.svelte.test.ts']
 				}
 			},
