@@ -90,14 +90,15 @@ async function checkEvidence(
 
 /**
  * Saves a draft as a version.
- * @param baseVersion the version that the change started from
+ * @param given.baseVersion the version that the change started from
+ * @param given.ownVersion never one with the save before, even within the time that counts as one version
  * @returns the new version's number; the former one where nothing changed
  * @throws ConflictError where somebody, or another tab, has saved since.
  */
 export async function saveDraft(
 	membership: Membership | null,
 	id: string,
-	given: { draft: unknown; baseVersion: number; title?: string },
+	given: { draft: unknown; baseVersion: number; title?: string; ownVersion?: boolean },
 	db: Database = database()
 ): Promise<number> {
 	requireAction(membership, 'calculation.write');
@@ -132,7 +133,7 @@ export async function saveDraft(
 			.update(calculations)
 			.set({ draft, title, version, updatedAt: sql`now()` })
 			.where(eq(calculations.id, id));
-		await keepVersion(id, version, draft, membership.userId, tx);
+		await keepVersion(id, { version, draft, ownVersion: given.ownVersion === true }, membership.userId, tx);
 		await touchDossier(tx, membership, before.dossier.id);
 		return version;
 	});
@@ -140,8 +141,7 @@ export async function saveDraft(
 
 async function keepVersion(
 	id: string,
-	version: number,
-	draft: CalculationDraft,
+	{ version, draft, ownVersion }: { version: number; draft: CalculationDraft; ownVersion: boolean },
 	userId: string,
 	db: Queryable
 ) {
@@ -156,7 +156,8 @@ async function keepVersion(
 		.where(eq(calculationVersions.calculationId, id))
 		.orderBy(desc(calculationVersions.version))
 		.limit(1);
-	if (newest !== undefined && newest.recent && newest.savedBy === userId && newest.version > 1) {
+	const continued = newest !== undefined && newest.recent && newest.savedBy === userId && newest.version > 1;
+	if (continued && !ownVersion) {
 		await db.update(calculationVersions).set({ version, draft }).where(eq(calculationVersions.id, newest.id));
 		return;
 	}
@@ -173,7 +174,7 @@ export async function restoreVersion(
 	requireAction(membership, 'calculation.write');
 	const draft = await getVersion(membership, id, version, db);
 	const { version: baseVersion } = await getCalculation(membership, id, db);
-	await saveDraft(membership, id, { draft, baseVersion }, db);
+	await saveDraft(membership, id, { draft, baseVersion, ownVersion: true }, db);
 	await recordAudit(db, membership, 'calculation.restore-version', id, { version });
 }
 
