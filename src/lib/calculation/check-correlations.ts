@@ -2,8 +2,13 @@ import { numberAt, objectAt, pointer, quoted, textAt } from './json';
 import { ProblemError } from './problem';
 import type { Correlation } from './types';
 
-/** Correlations between known columns, each pair once. */
-export function correlationsAt(given: unknown, path: string, columns: ReadonlySet<string>): Correlation[] {
+/** Correlations between known columns, each pair once; an alias stands for the column that it reads. */
+export function correlationsAt(
+	given: unknown,
+	path: string,
+	columns: ReadonlySet<string>,
+	aliases: ReadonlyMap<string, string> = new Map()
+): Correlation[] {
 	if (given === undefined) return [];
 	if (!Array.isArray(given) || given.length > 2000) {
 		throw new ProblemError('wrong-type', 'Correlations are a list of at most 2000 entries.', path);
@@ -18,7 +23,8 @@ export function correlationsAt(given: unknown, path: string, columns: ReadonlySe
 				['b', b]
 			] as const
 		).map(([key, value]) => {
-			const id = textAt(value, pointer(at, key), 200);
+			const name = textAt(value, pointer(at, key), 200);
+			const id = aliases.get(name) ?? name;
 			if (!columns.has(id)) {
 				throw new ProblemError('unknown-input', `There is no input ${quoted(id)} here.`, pointer(at, key));
 			}

@@ -106,5 +106,13 @@ export function distributionAt(
 		...(unit === ownUnit ? parameters : {}),
 		...(given.degreesOfFreedom === undefined ? {} : { degreesOfFreedom: degrees })
 	} as DistributionSpec;
-	return { distribution: family.build(inSi, si), degreesOfFreedom: degrees, listed };
+	const distribution = family.build(inSi, si);
+	if (!Number.isFinite(distribution.standardUncertainty)) {
+		throw new ProblemError(
+			'bad-distribution',
+			'So wide a distribution has no standard uncertainty that can be computed with. Narrow it.',
+			path
+		);
+	}
+	return { distribution, degreesOfFreedom: degrees, listed };
 }

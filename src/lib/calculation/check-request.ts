@@ -44,7 +44,8 @@ export function checkRequest(value: unknown): CheckedRequest {
 	const correlations = correlationsAt(
 		entry.correlations,
 		'/correlations',
-		new Set(model.columns.map(({ id }) => id))
+		new Set(model.columns.map(({ id }) => id)),
+		model.aliases
 	);
 	const comparison = comparisonAt(model.method, entry.compareWith, '/compareWith');
 	return { request: value as ComputeRequest, model, correlations, evaluation, comparison };

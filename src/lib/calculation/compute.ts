@@ -2,7 +2,7 @@ import { cautionsFor } from '../comparability';
 import { claimFinding } from '../comparability/claim-finding';
 import { limitFinding } from '../comparability/limit-finding';
 import { loadUnits } from '../quantities';
-import { toSi } from '../quantities/convert';
+import { differenceToSi, toSi } from '../quantities/convert';
 import { parseUnit } from '../quantities/parse-unit';
 import { sealRecord } from '../record/seal';
 import { firstOrder, type FirstOrderOutput } from '../uncertainty/first-order';
@@ -74,13 +74,15 @@ function trialModel({ model, correlations }: CheckedRequest, outputs: readonly s
 function trialSettings(checked: CheckedRequest, delegates: boolean): MonteCarloSettings {
 	const { evaluation, comparison } = checked;
 	const limit = comparison?.kind === 'limit' ? comparison : undefined;
-	const unit = limit === undefined ? undefined : parseUnit(limit.unit ?? outputUnit(checked, limit.output));
-	if (limit === undefined || unit === undefined) return { ...evaluation, delegates };
+	const output = checked.model.outputs.find(({ id }) => id === limit?.output);
+	const unit = output === undefined ? undefined : parseUnit(limit?.unit ?? output.unit);
+	if (limit === undefined || output === undefined || unit === undefined) return { ...evaluation, delegates };
+	const inSi = output.quantity === 'temperature-difference' ? differenceToSi : toSi;
 	const tailShare = limit.rule.type === 'guard-band' ? limit.rule.risk : 0;
 	return {
 		...evaluation,
 		delegates,
-		watch: { output: limit.output, level: toSi(limit.value, unit), tailShare }
+		watch: { output: limit.output, level: inSi(limit.value, unit), tailShare }
 	};
 }
 
@@ -88,7 +90,16 @@ function* propagate(checked: CheckedRequest, trials: TrialModel, delegates: bool
 	const { evaluation, model } = checked;
 	const propagated: Propagated = { values: bestValues(trials) };
 	const uncertain = model.columns.some(({ distribution }) => distribution.standardUncertainty > 0);
-	if (evaluation.propagation === 'none') return propagated;
+	if (evaluation.propagation === 'none') {
+		if (uncertain && checked.comparison?.kind === 'limit') {
+			throw new ProblemError(
+				'uncertainty-needed',
+				'Whether a limit is met depends on the uncertainty of the result. Have it propagated, by trials or to first order.',
+				'/evaluation/propagation'
+			);
+		}
+		return propagated;
+	}
 	if (!uncertain) return { ...propagated, exact: true };
 	if (evaluation.propagation === 'first-order') {
 		propagated.linear = firstOrder(trials, evaluation.coverage);
@@ -109,10 +120,6 @@ export function computeShare(input: unknown, delegation: Delegation, first: numb
 	const { evaluation } = checked;
 	if (evaluation.trials === 'adaptive') throw new Error('Adaptive trials are not shared out.');
 	return runShare(trials, trialSettings(checked, false), evaluation.trials, delegation, first, stride);
-}
-
-function outputUnit({ model }: CheckedRequest, id: string): string {
-	return model.outputs.find((output) => output.id === id)?.unit ?? '';
 }
 
 function bestValues(trials: TrialModel): Record<string, number> {
@@ -186,7 +193,7 @@ export function* computeInBlocks(input: unknown, delegates = false): Steps<Compu
 	if (comparison?.kind === 'claim') finding = claimFinding(comparison, context, cautions);
 	if (comparison?.kind === 'limit') finding = limitFinding(comparison, context);
 	const { outputs: asked } = evaluation;
-	return sealRecord(request, {
+	const result = {
 		method: { id: model.method.id, version: model.method.version },
 		inputs: model.used,
 		options: model.options,
@@ -198,7 +205,25 @@ export function* computeInBlocks(input: unknown, delegates = false): Steps<Compu
 		cautions,
 		evaluation: listEvaluation(checked, propagated.trials),
 		...(finding === undefined ? {} : { finding })
-	});
+	};
+	if (!isFiniteThroughout(finding)) throw beyondNumbers('the comparison', '/compareWith');
+	if (!isFiniteThroughout(result)) throw beyondNumbers('the result', '/inputs');
+	return sealRecord(request, result);
+}
+
+/** Whether every number in plain data is one that JSON can carry. */
+function isFiniteThroughout(value: unknown): boolean {
+	if (typeof value === 'number') return Number.isFinite(value);
+	if (typeof value !== 'object' || value === null) return true;
+	return Object.values(value).every(isFiniteThroughout);
+}
+
+function beyondNumbers(what: string, path: string): ProblemError {
+	return new ProblemError(
+		'not-finite',
+		`These values give numbers in ${what} that are too large to compute with.`,
+		path
+	);
 }
 
 /** Computes at once; for requests whose units are in the own table. */

@@ -14,7 +14,10 @@ export function drawSeries(
 	trials: TrialModel,
 	band: { seed: string; coverage: number } | undefined
 ): Record<string, Series> {
-	const single = model.local(bestEstimates(trials), 1);
+	// Copied: a linked input's column is a buffer that the next evaluation fills again.
+	const single = Object.fromEntries(
+		Object.entries(model.local(bestEstimates(trials), 1)).map(([id, column]) => [id, column.slice(0, 1)])
+	);
 	const drawn = band === undefined ? undefined : draw(model, trials, band.seed);
 	const series: Record<string, Series> = {};
 	for (const [key, family] of Object.entries(model.prepared.series)) {

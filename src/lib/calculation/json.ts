@@ -13,7 +13,8 @@ export function isPlainObject(value: unknown): value is PlainObject {
 
 /** A name as it is quoted in a message: cut, so that nobody's megabyte comes back. */
 export function quoted(name: unknown): string {
-	const text = typeof name === 'string' ? name : (JSON.stringify(name) ?? String(name));
+	const words = typeof name === 'string' || typeof name === 'number';
+	const text = words ? String(name) : (JSON.stringify(name) ?? String(name));
 	return `"${text.length > 60 ? `${text.slice(0, 60)}…` : text}"`;
 }
 

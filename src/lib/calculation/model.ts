@@ -46,6 +46,8 @@ export interface CompiledModel {
 	prepared: PreparedMethod;
 	columns: readonly InputColumn[];
 	used: Record<string, InputUsed>;
+	/** Inputs that read the column of another under the same shared name: their own name to its. */
+	aliases: ReadonlyMap<string, string>;
 	options: Options;
 	/** Own unit by column id, for sensitivities. */
 	unitOf: ReadonlyMap<string, string>;
@@ -60,7 +62,9 @@ class Compiler {
 	readonly columns = new Map<string, InputColumn>();
 	readonly used: Record<string, InputUsed> = {};
 	readonly unitOf = new Map<string, string>();
-	private readonly sharedEntries = new Map<string, string>();
+	/** Inputs that read another's column, by their own names. */
+	readonly aliases = new Map<string, string>();
+	private readonly sharedColumns = new Map<string, { column: InputColumn; text: string }>();
 
 	node(id: unknown, inputs: unknown, options: unknown, path: string, prefix: string, depth: number): Node {
 		const method = typeof id === 'string' ? methodById(id) : undefined;
@@ -124,29 +128,26 @@ class Compiler {
 				: givenInput(spec, entry, path);
 		const id = prefix + spec.id;
 		this.used[id] = checked.used;
-		if (checked.shared === undefined) {
+		const text = JSON.stringify([checked.column.value, checked.used.unit, checked.used.distribution ?? null]);
+		const first = checked.shared === undefined ? undefined : this.sharedColumns.get(checked.shared);
+		if (first === undefined) {
 			const column = { ...checked.column, id };
 			this.columns.set(id, column);
 			this.unitOf.set(id, spec.unit);
+			if (checked.shared !== undefined) this.sharedColumns.set(checked.shared, { column, text });
 			return column;
 		}
 		// The first input under a shared name is drawn; the others must be the same quantity and read its column.
-		const text = JSON.stringify([checked.column.value, checked.used.unit, checked.used.distribution ?? null]);
-		const before = this.sharedEntries.get(checked.shared);
-		if (before !== undefined && before !== text) {
+		if (first.text !== text) {
 			throw new ProblemError(
 				'shared-differs',
 				`The inputs shared as ${quoted(checked.shared)} differ; a shared quantity has one value and one distribution.`,
 				path
 			);
 		}
-		this.sharedEntries.set(checked.shared, text);
-		const existing = this.columns.get(checked.shared);
-		if (existing !== undefined) return existing;
-		const column = { ...checked.column, id: checked.shared };
-		this.columns.set(checked.shared, column);
-		this.unitOf.set(checked.shared, spec.unit);
-		return column;
+		first.column.domain = narrower(first.column.domain, checked.column.domain);
+		this.aliases.set(id, first.column.id);
+		return first.column;
 	}
 
 	private link(
@@ -198,6 +199,20 @@ class Compiler {
 			[...this.columns.values()].map(({ id, value }) => [id, Float64Array.of(value)])
 		);
 	}
+}
+
+/** What lies inside both ranges. */
+function narrower(a: Range, b: Range): Range {
+	const fromB =
+		a.low === null || (b.low !== null && (b.low > a.low || (b.low === a.low && b.lowOpen === true)));
+	const toB =
+		a.high === null || (b.high !== null && (b.high < a.high || (b.high === a.high && b.highOpen === true)));
+	return {
+		low: (fromB ? b : a).low,
+		lowOpen: (fromB ? b : a).lowOpen,
+		high: (toB ? b : a).high,
+		highOpen: (toB ? b : a).highOpen
+	};
 }
 
 /** Two ways of giving the same thing at once are an error. */
@@ -264,6 +279,7 @@ export function compileModel(method: unknown, inputs: unknown, options: unknown)
 		prepared: root.prepared,
 		columns: [...compiler.columns.values()],
 		used: compiler.used,
+		aliases: compiler.aliases,
 		options: root.setting.options as Options,
 		unitOf: compiler.unitOf,
 		evaluate: (columns, n, out) => evaluateNode(root, columns, n, out),

@@ -1,5 +1,5 @@
 import type { Caution } from '../calculation/types';
-import { areaWords, claimOf, type Rule } from './context';
+import { areaWords, claimOf, isUnstated, type Rule } from './context';
 
 const source = 'Comparability rule of this service: like with like.';
 
@@ -9,7 +9,7 @@ export const areaMismatch: Rule = (context) => {
 	const compared = claimOf(context);
 	if (compared !== undefined) {
 		const { claim, output } = compared;
-		if (claim.area === 'not-stated') {
+		if (isUnstated(claim.area, output)) {
 			cautions.push({
 				code: 'area-mismatch',
 				level: 'caution',

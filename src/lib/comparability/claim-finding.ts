@@ -9,6 +9,7 @@ import {
 	formatSignificant
 } from '../quantities';
 import { normalQuantile } from '../uncertainty/special/normal';
+import { studentsTQuantile } from '../uncertainty/special/students-t';
 import { estimateOf, specOf, type RuleContext } from './context';
 
 /** Standard uncertainty of a claim: as stated, else that of rounding to its decimals, else none. */
@@ -19,7 +20,8 @@ function claimUncertainty({ standardUncertainty, decimals }: ClaimComparison): n
 
 /**
  * A stated number against a result: difference (stated minus computed), normalised error E_n and zeta score in the terms
- * of ISO 13528, both in the claim's unit. E_n divides by the expanded uncertainty at the coverage of the evaluation.
+ * of ISO 13528, both in the claim's unit. E_n divides by the expanded uncertainty at the coverage of the evaluation (normal, or
+ * Student's t where the result has finite degrees of freedom).
  * Any caution of the level `stop` makes the two not comparable, whatever the figures.
  */
 export function claimFinding(
@@ -48,19 +50,22 @@ export function claimFinding(
 		verdict: 'not-comparable',
 		reasons: []
 	};
-	const k = normalQuantile((1 + context.checked.evaluation.coverage) / 2);
+	const p = (1 + context.checked.evaluation.coverage) / 2;
+	const k = normalQuantile(p);
+	const ours = studentsTQuantile(p, output.effectiveDegreesOfFreedom ?? Infinity) * u;
+	const expanded = u > 0 ? Math.sqrt(ours * ours + k * statedU * (k * statedU)) : k * statedU;
 	if (combined > 0) {
 		finding.zetaScore = apart / combined;
-		finding.normalisedError = apart / (k * combined);
+		finding.normalisedError = apart / expanded;
 	}
 	const stops = cautions.filter(({ level }) => level === 'stop');
 	if (stops.length > 0) {
 		finding.reasons = stops.map(({ text }) => text);
 		return finding;
 	}
-	const agrees = combined > 0 ? Math.abs(apart) <= k * combined : apart === 0;
+	const agrees = combined > 0 ? Math.abs(apart) <= expanded : apart === 0;
 	finding.verdict = agrees ? 'consistent' : 'inconsistent';
-	finding.reasons = [sentence(apart, k * combined, unit, combined > 0)];
+	finding.reasons = [sentence(apart, expanded, unit, combined > 0)];
 	if (claim.standardUncertainty === undefined) {
 		finding.reasons.push(
 			claim.decimals === undefined
@@ -68,7 +73,14 @@ export function claimFinding(
 				: 'The stated number carries no uncertainty; only its rounding is allowed for.'
 		);
 	}
+	if (context.checked.evaluation.propagation === 'none' && hasUncertainInput(context)) {
+		finding.reasons.push('No uncertainty was propagated, so the result is compared as if it were exact.');
+	}
 	return finding;
+}
+
+function hasUncertainInput({ checked }: RuleContext): boolean {
+	return checked.model.columns.some(({ distribution }) => distribution.standardUncertainty > 0);
 }
 
 function sentence(apart: number, expanded: number, unit: string, resolved: boolean): string {

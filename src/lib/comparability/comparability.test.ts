@@ -68,6 +68,38 @@ describe('claims', () => {
 		);
 	});
 
+	it('a number that says nothing of what it averages is compared with a caution as well', () => {
+		const bare = { kind: 'claim' as const, value: 38, unit: 'degC', output: 'subsolarTemperature' };
+		const cautions = orrin(bare).cautions.filter(({ level }) => level === 'caution');
+		expect(cautions.map(({ code }) => code)).toEqual(
+			expect.arrayContaining(['area-mismatch', 'period-mismatch', 'temperature-kind-mismatch'])
+		);
+	});
+
+	it('few degrees of freedom widen the expanded uncertainty, and do not make the linear form doubtful', () => {
+		const result = computeNow({
+			method: 'effective-temperature',
+			inputs: { bondAlbedo: { value: 0.3, distribution: { ...normal(0.001), degreesOfFreedom: 3 } } },
+			evaluation: { propagation: 'first-order' },
+			compareWith: { ...claim, unit: 'K', value: 254.8, decimals: undefined, output: 'effectiveTemperature' }
+		});
+		const { finding } = result;
+		if (finding?.kind !== 'claim') throw new Error('no claim');
+		// Quantile of Student's t for 3 degrees of freedom: JCGM 100:2008, table G.2.
+		expect((finding.zetaScore ?? NaN) / (finding.normalisedError ?? NaN)).toBeCloseTo(3.18, 2);
+		expect(codes(result)).not.toContain('linear-propagation-doubtful');
+	});
+
+	it('says where the uncertainty of the result was left out', () => {
+		const { finding } = computeNow({
+			method: 'sunlit-equilibrium',
+			inputs: { bondAlbedo: { value: 0.1, distribution: normal(0.01) } },
+			evaluation: { propagation: 'none' },
+			compareWith: claim
+		});
+		expect(finding?.reasons.join(' ')).toContain('No uncertainty was propagated');
+	});
+
 	it('too many decimals are noted', () => {
 		expect(codes(orrin({ ...claim, decimals: 3 }))).toContain('digits-beyond-uncertainty');
 		expect(codes(orrin(claim))).not.toContain('digits-beyond-uncertainty');
@@ -125,6 +157,61 @@ describe('limits', () => {
 		expect(finding.acceptanceLimit).toBeCloseTo(99 + finding.guardBand, 9);
 		expect(roof(94, { type: 'guard-band', risk: 0.05 }).verdict).toBe('conforms');
 		expect(roof(106, { type: 'guard-band', risk: 0.05 }).verdict).toBe('does-not-conform');
+	});
+
+	it('a limit to a difference of temperatures counts degrees, not from a zero point', () => {
+		for (const propagation of ['monte-carlo', 'first-order']) {
+			const at = (value: number, unit: string) =>
+				computeNow({
+					method: 'effective-temperature',
+					inputs: {
+						bondAlbedo: { value: 0.3 },
+						observedTemperature: { value: 288, distribution: normal(1) }
+					},
+					evaluation: { propagation, trials: 20_000 },
+					compareWith: {
+						kind: 'limit',
+						value,
+						unit,
+						output: 'temperatureDifference',
+						sense: 'at-most',
+						rule: { type: 'guard-band', risk: 0.05 }
+					}
+				}).finding as LimitFinding;
+			const kelvin = at(34, 'K');
+			for (const [other, size] of [
+				[at(34 * 1.8, 'degF'), 1.8],
+				[at(34, 'degC'), 1]
+			] as const) {
+				expect(other.verdict).toBe(kelvin.verdict);
+				expect(other.probabilityOfConformity).toBeCloseTo(kelvin.probabilityOfConformity, 3);
+				expect(other.result.value).toBeCloseTo(kelvin.result.value * size, 8);
+				expect(other.guardBand).toBeCloseTo(kelvin.guardBand * size, 8);
+			}
+		}
+	});
+
+	it('few degrees of freedom leave more beyond a limit', () => {
+		const probability = (degreesOfFreedom?: number) =>
+			(
+				computeNow({
+					method: 'solar-reflectance-index',
+					inputs: {
+						solarReflectance: { value: 0.8, distribution: { ...normal(0.02), degreesOfFreedom } },
+						thermalEmittance: { value: 0.9 }
+					},
+					evaluation: { propagation: 'first-order' },
+					compareWith: {
+						kind: 'limit',
+						value: 95,
+						output: 'solarReflectanceIndex',
+						sense: 'at-least',
+						rule: { type: 'simple-acceptance' }
+					}
+				}).finding as LimitFinding
+			).probabilityOfConformity;
+		expect(probability(2)).toBeLessThan(probability() - 0.02);
+		expect(probability(1e6)).toBeCloseTo(probability(), 5);
 	});
 
 	it('trials and the normal form give nearly the same probability', () => {
@@ -206,6 +293,22 @@ describe('cautions', () => {
 		expect(with_(0.15, 'monte-carlo')).toContain('linear-propagation-doubtful');
 		expect(with_(0.15, 'first-order')).toContain('linear-propagation-doubtful');
 		expect(with_(0.001, 'monte-carlo')).not.toContain('linear-propagation-doubtful');
+	});
+
+	it('a t distribution without a standard deviation is said to have none', () => {
+		const with_ = (degreesOfFreedom: number) =>
+			computeNow({
+				method: 'effective-temperature',
+				inputs: {
+					irradiance: {
+						value: 1361,
+						distribution: { type: 'students-t', standardUncertainty: 1, degreesOfFreedom }
+					},
+					bondAlbedo: { value: 0.3 }
+				}
+			}).cautions.filter(({ code, level }) => code === 'not-converged' && level === 'caution').length;
+		expect(with_(2)).toBe(1);
+		expect(with_(3)).toBe(0);
 	});
 
 	it('few trials and idle correlations are noted', () => {

@@ -26,6 +26,14 @@ export function specOf({ checked }: RuleContext, id: string): OutputSpec | undef
 	return checked.model.outputs.find((output) => output.id === id);
 }
 
+/**
+ * Whether a claim leaves open what it stands for: it says so, or says nothing. Of a bare number, such as an index, only
+ * the first is asked.
+ */
+export function isUnstated(stated: string | undefined, { quantity }: OutputSpec): boolean {
+	return stated === 'not-stated' || (stated === undefined && quantity !== 'number');
+}
+
 /** The best figure for an output: the mean of the trials where there were any, else the value. */
 export function estimateOf({ mean, value }: OutputResult): number {
 	return mean ?? value;

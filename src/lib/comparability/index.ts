@@ -8,6 +8,7 @@ import { differenceUnresolved } from './difference-unresolved';
 import { digitsBeyondUncertainty } from './digits-beyond-uncertainty';
 import { effectiveReadAsMean } from './effective-read-as-mean';
 import { emissivityAssumedOne } from './emissivity-assumed-one';
+import { heavyTails } from './heavy-tails';
 import { hotSurface } from './hot-surface';
 import { irradianceSuperseded } from './irradiance-superseded';
 import { linearPropagationDoubtful } from './linear-propagation-doubtful';
@@ -31,6 +32,7 @@ const rules: readonly Rule[] = [
 	differenceUnresolved,
 	linearPropagationDoubtful,
 	notConverged,
+	heavyTails,
 	emissivityAssumedOne,
 	irradianceSuperseded,
 	digitsBeyondUncertainty,

@@ -10,6 +10,7 @@ import {
 import { fromSi } from '../quantities/convert';
 import { ownUnitOf } from '../calculation/check-input';
 import { normalCdf, normalQuantile } from '../uncertainty/special/normal';
+import { studentsTQuantile, studentsTUpper } from '../uncertainty/special/students-t';
 import { estimateOf, specOf, type RuleContext } from './context';
 
 interface Spread {
@@ -19,13 +20,14 @@ interface Spread {
 	quantile(p: number): number;
 }
 
-/** Distribution of the result: the trials where there were any, else normal; a step for an exact result. */
+/** The trials where there were any, else normal or, with finite degrees of freedom, Student's t; a step if exact. */
 function spreadOf(
 	limit: LimitComparison,
 	context: RuleContext,
 	estimate: number,
 	u: number,
-	unit: string
+	unit: string,
+	degrees: number | undefined
 ): Spread {
 	const { trials } = context.propagated;
 	const statistics = trials?.outputs[limit.output];
@@ -33,10 +35,11 @@ function spreadOf(
 	if (trials?.shareAtOrBelow !== undefined && statistics !== undefined && spec !== undefined) {
 		const own = ownUnitOf(spec.unit);
 		const { order } = statistics;
+		const toLimit = spec.quantity === 'temperature-difference' ? convertDifference : convert;
 		return {
 			atOrBelow: trials.shareAtOrBelow,
 			quantile: (p) =>
-				convert(
+				toLimit(
 					fromSi(order.at(Math.min(order.count, Math.max(1, Math.ceil(p * order.count)))), own),
 					spec.unit,
 					unit
@@ -44,9 +47,14 @@ function spreadOf(
 		};
 	}
 	if (u === 0) return { atOrBelow: estimate <= limit.value ? 1 : 0, quantile: () => estimate };
+	const z = (limit.value - estimate) / u;
+	if (degrees === undefined) {
+		return { atOrBelow: normalCdf(z), quantile: (p) => estimate + u * normalQuantile(p) };
+	}
+	const upper = studentsTUpper(Math.abs(z), degrees);
 	return {
-		atOrBelow: normalCdf((limit.value - estimate) / u),
-		quantile: (p) => estimate + u * normalQuantile(p)
+		atOrBelow: z > 0 ? 1 - upper : upper,
+		quantile: (p) => estimate + u * studentsTQuantile(p, degrees)
 	};
 }
 
@@ -60,10 +68,11 @@ export function limitFinding(limit: LimitComparison, context: RuleContext): Limi
 	const output = context.outputs[limit.output];
 	if (spec === undefined || output === undefined) throw new Error(`No output ${limit.output}.`);
 	const unit = limit.unit ?? spec.unit;
-	const estimate = convert(estimateOf(output), spec.unit, unit);
+	const toLimit = spec.quantity === 'temperature-difference' ? convertDifference : convert;
+	const estimate = toLimit(estimateOf(output), spec.unit, unit);
 	const u = convertDifference(output.standardUncertainty ?? 0, spec.unit, unit);
 	const atMost = limit.sense === 'at-most';
-	const spread = spreadOf(limit, context, estimate, u, unit);
+	const spread = spreadOf(limit, context, estimate, u, unit, output.effectiveDegreesOfFreedom);
 	const conformity =
 		atMost || u > 0 ? (atMost ? spread.atOrBelow : 1 - spread.atOrBelow) : estimate >= limit.value ? 1 : 0;
 	let guardBand = 0;

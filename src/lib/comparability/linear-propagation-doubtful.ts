@@ -21,6 +21,7 @@ export const linearPropagationDoubtful: Rule = ({ checked, propagated }) => {
 	const { linear, check } = propagated;
 	if (linear === undefined || check === undefined) return [];
 	const scatter = 4 * noise(checked.evaluation.coverage, check.trials);
+	const k = normalQuantile((1 + checked.evaluation.coverage) / 2);
 	const doubtful: string[] = [];
 	const figures: Record<string, number> = {};
 	for (const { id, unit } of checked.model.outputs) {
@@ -29,9 +30,14 @@ export const linearPropagationDoubtful: Rule = ({ checked, propagated }) => {
 		if (first === undefined || sampled === undefined || first.standardUncertainty === 0) continue;
 		const tolerance = numericalTolerance(first.standardUncertainty, 2);
 		const allowed = Math.max(tolerance, scatter * first.standardUncertainty);
-		const low = Math.abs(first.interval.low - sampled.symmetric.low);
-		const high = Math.abs(first.interval.high - sampled.symmetric.high);
-		if (low <= allowed && high <= allowed) continue;
+		// Degrees of freedom widen the linear interval alone where the trials draw from normal distributions.
+		const reaches = [(first.interval.high - first.interval.low) / 2, k * first.standardUncertainty];
+		const fits = reaches.some(
+			(reach) =>
+				Math.abs(first.value - reach - sampled.symmetric.low) <= allowed &&
+				Math.abs(first.value + reach - sampled.symmetric.high) <= allowed
+		);
+		if (fits) continue;
 		doubtful.push(id);
 		const own = ownUnitOf(unit);
 		figures[`${id}.linearLow`] = fromSi(first.interval.low, own);

@@ -1,4 +1,4 @@
-import { claimOf, periodWords, type Rule } from './context';
+import { claimOf, isUnstated, periodWords, type Rule } from './context';
 
 const source = 'Comparability rule of this service: like with like.';
 
@@ -7,7 +7,7 @@ export const periodMismatch: Rule = (context) => {
 	const compared = claimOf(context);
 	if (compared === undefined) return [];
 	const { claim, output } = compared;
-	if (claim.period === 'not-stated') {
+	if (isUnstated(claim.period, output)) {
 		return [
 			{
 				code: 'period-mismatch',

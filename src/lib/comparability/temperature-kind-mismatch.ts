@@ -1,5 +1,5 @@
 import type { Caution } from '../calculation/types';
-import { claimOf, kindWords, type Rule } from './context';
+import { claimOf, isUnstated, kindWords, type Rule } from './context';
 
 const source = 'Comparability rule of this service: like with like.';
 
@@ -10,7 +10,7 @@ export const temperatureKindMismatch: Rule = (context) => {
 	const kind = compared?.output.temperatureKind;
 	if (compared !== undefined && kind !== undefined) {
 		const { claim, output } = compared;
-		if (claim.temperatureKind === 'not-stated') {
+		if (isUnstated(claim.temperatureKind, compared.output)) {
 			cautions.push({
 				code: 'temperature-kind-mismatch',
 				level: 'caution',

@@ -132,6 +132,12 @@ class Run {
 				order
 			};
 		}
+		if (watch !== undefined && watch.tailShare > 0) {
+			// Read now, so that a tail of which too little was kept is found while the run can be repeated.
+			const order = outputs[watch.output]?.order;
+			order?.at(Math.max(1, Math.ceil(watch.tailShare * trials)));
+			order?.at(Math.ceil((1 - watch.tailShare) * trials));
+		}
 		const outcome: MonteCarloOutcome = { trials, redrawn: this.redrawn, converged, outputs };
 		if (watch !== undefined) outcome.shareAtOrBelow = (this.tallies[watch.output]?.atOrBelow ?? 0) / trials;
 		return outcome;

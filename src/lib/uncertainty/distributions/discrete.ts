@@ -9,7 +9,7 @@ function lists(parameters: Parameters): { values: readonly number[]; weights: re
 export const discrete: DistributionFamily = {
 	type: 'discrete',
 	ways: [['values', 'weights']],
-	fault(parameters) {
+	fault(parameters, value) {
 		const { values, weights } = lists(parameters);
 		if (values.length === 0 || values.length > 10_000) {
 			return { parameter: 'values', message: 'must hold between 1 and 10 000 numbers' };
@@ -19,6 +19,13 @@ export const discrete: DistributionFamily = {
 		}
 		if (weights.some((weight) => weight < 0) || !weights.some((weight) => weight > 0)) {
 			return { parameter: 'weights', message: 'must not be negative, and one must lie above zero' };
+		}
+		if (!Number.isFinite(weights.reduce((sum, weight) => sum + weight, 0))) {
+			return { parameter: 'weights', message: 'are too large to add up' };
+		}
+		const possible = values.filter((_, i) => (weights[i] as number) > 0);
+		if (possible.every((x) => x === possible[0]) && possible[0] !== value) {
+			return { parameter: 'values', message: 'must be the value itself where only one is possible' };
 		}
 		return undefined;
 	},

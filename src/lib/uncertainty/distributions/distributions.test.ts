@@ -69,6 +69,17 @@ describe('distributions', () => {
 		expect(Math.abs(share - 0.95)).toBeLessThan(0.003);
 	});
 
+	it('a beta distribution with next to no middle draws its ends', () => {
+		const distribution = build('beta', { low: 0, high: 1, alpha: 1e-3, beta: 2e-3 }, 0.5);
+		const drawn = new Float64Array(20_000);
+		distribution.fill(new Stream('b'), drawn, drawn.length);
+		const ends = drawn.filter((x) => x < 0.01 || x > 0.99).length / drawn.length;
+		expect(ends).toBeGreaterThan(0.98);
+		// Mean alpha / (alpha + beta).
+		const mean = drawn.reduce((sum, x) => sum + x, 0) / drawn.length;
+		expect(Math.abs(mean - 1 / 3)).toBeLessThan(0.015);
+	});
+
 	it('gives the standard uncertainties of JCGM 101:2008, 6.4', () => {
 		expect(build('rectangular', { halfWidth: 3 }, 0).standardUncertainty).toBeCloseTo(3 / Math.sqrt(3), 14);
 		expect(build('triangular', { halfWidth: 3 }, 0).standardUncertainty).toBeCloseTo(3 / Math.sqrt(6), 14);

@@ -155,4 +155,9 @@ export class Stream {
 			if (ln(this.uniform()) < 0.5 * z * z + d * (1 - v + ln(v))) return d * v;
 		}
 	}
+
+	/** The natural logarithm of one gamma number of the given shape and scale 1. */
+	lnGamma(shape: number): number {
+		return shape < 1 ? ln(this.gamma(shape + 1)) + ln(this.uniform()) / shape : ln(this.gamma(shape));
+	}
 }

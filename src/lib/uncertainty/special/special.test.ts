@@ -36,6 +36,17 @@ describe('special functions', () => {
 		relative(studentsTQuantile(0.025, 4), -2 * Math.sqrt(q - 1), 1e-12);
 	});
 
+	it("Student's t: keeps its digits for very many degrees of freedom", () => {
+		const z = normalQuantile(0.975);
+		// First term of the expansion about the normal quantile (Abramowitz & Stegun 26.7.5); the next is below 1e-11.
+		for (const degrees of [1e6, 1e8, 9e9]) {
+			relative(studentsTQuantile(0.975, degrees), z + (z * z * z + z) / (4 * degrees), 1e-11);
+		}
+		// Both forms meet where one takes over from the other.
+		relative(studentsTQuantile(0.995, 10_001), studentsTQuantile(0.995, 9_999), 1e-7);
+		relative(studentsTQuantile(0.995, 10_000.000001), studentsTQuantile(0.995, 10_000), 1e-10);
+	});
+
 	it("Student's t: JCGM 100:2008, table G.2 (two decimals)", () => {
 		expect(studentsTQuantile(0.975, 8)).toBeCloseTo(2.31, 2);
 		expect(studentsTQuantile(0.995, 16)).toBeCloseTo(2.92, 2);
