@@ -128,8 +128,8 @@ export const britishEnglish = {
 			`Decision rule: guard band. The result is accepted where its estimate meets ${acceptance}, that is the limit moved inwards by ${band}, so that the probability of accepting wrongly stays at or below ${risk}.`,
 		consumerRisk: (risk: string): string => `The probability that this acceptance is wrong is ${risk}.`,
 		producerRisk: (risk: string): string => `The probability that this rejection is wrong is ${risk}.`,
-		undecidedRisk: (risk: string): string =>
-			`The estimate lies within the guard band: accepting it would be wrong with a probability of ${risk}, more than the rule allows, and rejecting it is not justified either.`
+		undecidedRisk: (meetsLimit: boolean, accepting: string, rejecting: string): string =>
+			`The estimate ${meetsLimit ? 'meets the limit but lies within the guard band' : 'lies beyond the limit, but not far enough beyond it'}: accepting it would be wrong with a probability of ${accepting} and rejecting it with one of ${rejecting}, both more than the rule allows.`
 	},
 
 	uncertainty: {

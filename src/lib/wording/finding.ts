@@ -128,7 +128,13 @@ function rule(finding: LimitFinding, scale: TemperatureScale, words: Catalogue):
 function riskSentence(finding: LimitFinding, words: Catalogue): string {
 	const risk = probability(finding.risk.probability);
 	if (finding.verdict === 'undecided') {
-		return words.limit.undecidedRisk(probability(1 - finding.probabilityOfConformity));
+		const { limit, result, probabilityOfConformity } = finding;
+		const meetsLimit = limit.sense === 'at-most' ? result.value <= limit.value : result.value >= limit.value;
+		return words.limit.undecidedRisk(
+			meetsLimit,
+			probability(1 - probabilityOfConformity),
+			probability(probabilityOfConformity)
+		);
 	}
 	return finding.risk.kind === 'consumer' ? words.limit.consumerRisk(risk) : words.limit.producerRisk(risk);
 }

@@ -191,4 +191,31 @@ describe('a finding', () => {
 		expect(text).toContain('at most 258.7\u00a0K');
 		expect(text).toContain('acceptance is wrong is less than 0.1\u202f%');
 	});
+
+	it('says on which side of the limit an undecided result lies', () => {
+		const undecided = (value: number, probabilityOfConformity: number, sense: 'at-most' | 'at-least') => {
+			const finding: LimitFinding = {
+				kind: 'limit',
+				output: 'sunlitMeanTemperature',
+				limit: { value: 260, unit: 'K', sense, source: 'Specification 7, clause 2.' },
+				result: { value, unit: 'K', standardUncertainty: 0.8 },
+				rule: { type: 'guard-band', risk: 0.05 },
+				guardBand: 1.3,
+				acceptanceLimit: sense === 'at-most' ? 258.7 : 261.3,
+				probabilityOfConformity,
+				risk: { kind: 'producer', probability: probabilityOfConformity },
+				verdict: 'undecided',
+				reasons: []
+			};
+			return plainText(findingSentences(sunlit, finding, { scale: 'K' }).reasons);
+		};
+		expect(undecided(259.5, 0.73, 'at-most')).toContain('meets the limit but lies within the guard band');
+		expect(undecided(260.3, 0.35, 'at-most')).toContain(
+			'lies beyond the limit, but not far enough beyond it'
+		);
+		expect(undecided(260.3, 0.65, 'at-least')).toContain('meets the limit but lies within the guard band');
+		expect(undecided(259.5, 0.27, 'at-least')).toContain(
+			'accepting it would be wrong with a probability of 73\u202f% and rejecting it with one of 27\u202f%'
+		);
+	});
 });
