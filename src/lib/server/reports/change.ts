@@ -108,6 +108,14 @@ function requireOpen(report: ReportView): void {
 }
 
 /**
+ * The chosen results, each once, those chosen before in their order: a form sends them in the order of its list, and
+ * the report leads with the first.
+ */
+function inStandingOrder(chosen: readonly string[], before: readonly string[]): string[] {
+	return [...new Set([...before.filter((id) => chosen.includes(id)), ...chosen])];
+}
+
+/**
  * Saves title, text and chosen results of a draft.
  * @returns the new version
  * @throws ConflictError where somebody saved since, InvalidInputError with faults by field.
@@ -133,7 +141,7 @@ export async function saveReport(
 	return db.transaction(async (tx) => {
 		await runsOf(membership, runIds, before.dossier.id, tx);
 		const [locked] = await tx
-			.select({ version: reports.version, state: reports.state })
+			.select({ version: reports.version, state: reports.state, runIds: reports.runIds })
 			.from(reports)
 			.where(eq(reports.id, id))
 			.for('update');
@@ -146,7 +154,13 @@ export async function saveReport(
 		}
 		await tx
 			.update(reports)
-			.set({ title, text, runIds, version: baseVersion + 1, updatedAt: sql`now()` })
+			.set({
+				title,
+				text,
+				runIds: inStandingOrder(runIds, locked.runIds),
+				version: baseVersion + 1,
+				updatedAt: sql`now()`
+			})
 			.where(eq(reports.id, id));
 		await touchDossier(tx, membership, before.dossier.id);
 		return baseVersion + 1;

@@ -136,6 +136,15 @@ describe('reports', () => {
 		);
 	});
 
+	it('keep leading with the result they began with, however the form orders the chosen ones', async () => {
+		const id = await make();
+		const second = await computedTile(author, dossierId);
+		await change(id, {}, { runIds: [second, runId, second] });
+		expect((await getReport(author, id, db)).runIds).toEqual([runId, second]);
+		await change(id, {}, { runIds: [second] });
+		expect((await getReport(author, id, db)).runIds).toEqual([second]);
+	});
+
 	it('can be deleted and brought back while they are drafts', async () => {
 		const id = await make();
 		await deleteReport(author, id, db);
