@@ -67,7 +67,6 @@ export async function bundleCommand(name) {
 		format: 'esm',
 		packages: 'external',
 		alias: { $lib: join(root, 'src', 'lib') },
-		sourcemap: 'inline',
 		logLevel: 'error',
 		metafile: true,
 		write: false
