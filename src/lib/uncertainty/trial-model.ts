@@ -18,7 +18,7 @@ export interface InputColumn {
 	domain: Range;
 }
 
-/** What an uncertainty is propagated through: any function of columns. */
+/** What an uncertainty is propagated through, be it whatever function of columns. */
 export interface TrialModel {
 	columns: readonly InputColumn[];
 	correlations: readonly Correlation[];

@@ -76,7 +76,7 @@ async function load(membership: Membership, given: DemoDossier, db: Database): P
 }
 
 /**
- * Gives each organisation of the demo its work, once: an organisation that has any dossier, also a deleted one, is
+ * Gives each organisation of the demo its work, once. An organisation that has a dossier, be it a deleted one, is
  * left alone. The issue of a memo waits in the queue for a worker.
  */
 export async function loadDemoWork(
