@@ -6,7 +6,7 @@ import { ensurePackages, packagesToRun } from './lib/packages.mjs';
 import { dataFolder, ensureFolder } from './lib/paths.mjs';
 import { explain, PlainError } from './lib/plain-error.mjs';
 import { portFor, webPort } from './lib/ports.mjs';
-import { clusterFolder, startCluster, stopCluster } from './lib/postgres.mjs';
+import { clusterFolder, requireDatabase, startCluster, stopCluster } from './lib/postgres.mjs';
 import { endRunning } from './lib/run.mjs';
 import { keptSecrets } from './lib/secrets.mjs';
 import { startService } from './lib/service.mjs';
@@ -101,6 +101,8 @@ async function main() {
 			durable: true
 		});
 		databaseUrl = cluster.url;
+	} else {
+		await requireDatabase(databaseUrl);
 	}
 	await (dev ? ensureWorkerBuild(say) : ensureBuild(say));
 	const service = await startService({

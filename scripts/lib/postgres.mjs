@@ -213,3 +213,18 @@ async function ensureRoleAndDatabase({ port, password, keeperPassword, folder })
 		await client.end();
 	}
 }
+
+/** @param {string} url of a database that the caller gave @throws {PlainError} if it does not answer */
+export async function requireDatabase(url) {
+	const { default: postgres } = await import('pg');
+	try {
+		const client = new postgres.Client({ connectionString: url, connectionTimeoutMillis: 10_000 });
+		await client.connect();
+		await client.end();
+	} catch (error) {
+		const reason = error instanceof Error ? error.message : String(error);
+		throw new PlainError(
+			`The database given as DATABASE_URL does not answer (${reason}). Mend it, or leave DATABASE_URL out.`
+		);
+	}
+}
