@@ -18,7 +18,7 @@ import { randomUUID } from 'node:crypto';
  * @property {string} dossier of the consultant, with calculations and an issued report
  * @property {string} limit calculation of the consultant, computed: a limit
  * @property {string} value calculation of the consultant, computed: a value
- * @property {string} unfinished calculation of the consultant
+ * @property {string} unfinished calculation of the consultant, with an answer that cannot be
  * @property {string} claim calculation of the reporter, computed: a claim
  * @property {string} draft report of the consultant
  * @property {string} preview of that draft, done
@@ -132,11 +132,22 @@ async function draftReport(page, dossier) {
 	return new URL(page.url()).pathname;
 }
 
+/** A copy of a calculation, which may be spoilt; made where there is none. @param {Page} page @param {string} title */
+async function copyOf(page, title) {
+	await visit(page, `/calculations?q=${encodeURIComponent(title)}`);
+	const known = page.getByRole('rowheader').getByRole('link', { name: `${title} (copy)` });
+	if ((await known.count()) > 0) return /** @type {string} */ (await known.first().getAttribute('href'));
+	await visit(page, `${await linkIn(page, '/calculations', title)}/history`);
+	await page.getByRole('button', { name: 'Duplicate this calculation' }).click();
+	await page.waitForURL(/\/question$/);
+	return new URL(page.url()).pathname.replace(/\/question$/, '');
+}
+
 /** @param {Page} page signed in as the consultant */
 async function consultantsWork(page) {
 	const limit = await linkIn(page, '/calculations', 'Coated sheet, aged three years');
 	const value = await linkIn(page, '/calculations', 'Sunlit side, local balance');
-	const unfinished = await linkIn(page, '/calculations', 'Dark patch, half filled in');
+	const unfinished = await copyOf(page, 'Dark patch, half filled in');
 	const dossier = await linkIn(page, '/dossiers', 'Roof surfaces, Marrow Coast');
 	const issued = await linkIn(page, '/reports', 'Coated roof sheet');
 	await visit(page, issued);

@@ -70,7 +70,7 @@ const publicScreens = [
 		who: 'nobody',
 		open: async (page) => {
 			await visit(page, '/verify');
-			await page.getByLabel('Code from page one').fill('too short');
+			await page.getByLabel('Code from page one').fill('8KQ2');
 			await press(page, 'Look it up');
 			await faultsShown(page);
 		}
@@ -185,8 +185,8 @@ const workScreens = [
 		who: 'consultant',
 		open: async (page, { value }) => {
 			await visit(page, `${value}/inputs/light`);
-			for (const summary of await page.getByRole('main').locator('details:not([open]) > summary').all())
-				await summary.click();
+			const closed = page.getByRole('main').locator('details:not([open]) > summary');
+			while ((await closed.count()) > 0) await closed.first().click();
 		}
 	},
 	{
@@ -194,6 +194,7 @@ const workScreens = [
 		who: 'consultant',
 		open: async (page, { unfinished }) => {
 			await visit(page, `${unfinished}/inputs/light`);
+			await page.locator('[id="in.bondAlbedo.value"]').fill('7');
 			await page.getByRole('button', { name: /^Continue/ }).click();
 			await faultsShown(page);
 		}
