@@ -1,14 +1,15 @@
 import { z } from 'zod';
 import type { CalculationDraft } from './draft';
 import { spreads } from './spreads';
+import { storable } from './storable';
 
 /*
  * What a browser may send as a draft. Everything typed is text of bounded length; ids are checked against the method
  * later. Strict throughout: an unknown key is an error, so that nothing rides along into the database.
  */
 
-const short = z.string().max(200);
-const long = z.string().max(4000);
+const short = z.string().max(200).transform(storable);
+const long = z.string().max(4000).transform(storable);
 const id = z.string().regex(/^[A-Za-z][A-Za-z0-9]{0,63}$/);
 const area = z.enum(['point', 'sunlit-hemisphere', 'whole-sphere', 'site', 'not-stated']);
 const period = z.enum(['instant', 'day', 'year', 'orbit', 'not-stated']);
@@ -24,7 +25,7 @@ const source = z.strictObject({
 
 const assumption = z.strictObject({
 	value: short,
-	unit: z.string().max(60),
+	unit: z.string().max(60).transform(storable),
 	spread: z.enum(spreads.map((spread) => spread.kind)),
 	spreadValues: z.record(id, long),
 	source,
@@ -50,7 +51,7 @@ export const draftSchema: z.ZodType<CalculationDraft> = z.strictObject({
 	claim: z
 		.strictObject({
 			value: short,
-			unit: z.string().max(60),
+			unit: z.string().max(60).transform(storable),
 			standardUncertainty: short,
 			output: id,
 			area,
@@ -64,7 +65,7 @@ export const draftSchema: z.ZodType<CalculationDraft> = z.strictObject({
 	limit: z
 		.strictObject({
 			value: short,
-			unit: z.string().max(60),
+			unit: z.string().max(60).transform(storable),
 			output: id,
 			sense: z.enum(['at-most', 'at-least']),
 			rule: z.enum(['simple-acceptance', 'guard-band']),
@@ -73,5 +74,5 @@ export const draftSchema: z.ZodType<CalculationDraft> = z.strictObject({
 		})
 		.nullable(),
 	temperatureUnit: z.enum(['K', 'degC', 'degF']),
-	visited: z.array(z.string().max(64)).max(50)
+	visited: z.array(z.string().max(64).transform(storable)).max(50)
 });

@@ -95,6 +95,17 @@ describe('calculations', () => {
 		}
 	});
 
+	it('store text without the characters that no database holds', async () => {
+		const id = await createCalculation(author, dossierId, { title: 'Sh\0eet', kind: 'find-value' }, db);
+		const { draft, version, title } = await getCalculation(author, id, db);
+		expect(title).toBe('Sheet');
+		const seed = 'noon\0mark\ud800';
+		const typed = { ...draft, evaluation: { ...draft.evaluation, seed } };
+		await saveDraft(author, id, { draft: typed, baseVersion: version, title: 'Roof\0' }, db);
+		const saved = await getCalculation(author, id, db);
+		expect([saved.title, saved.draft.evaluation.seed]).toEqual(['Roof', 'noonmark']);
+	});
+
 	it('keep versions that can be read and restored', async () => {
 		const id = await make();
 		const first = await getCalculation(author, id, db);

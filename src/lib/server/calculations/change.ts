@@ -2,6 +2,7 @@ import { and, desc, eq, isNotNull, sql } from 'drizzle-orm';
 import type { CalculationDraft, QuestionKind } from '$lib/calculation/draft';
 import { draftSchema } from '$lib/calculation/draft-schema';
 import { newDraft } from '$lib/calculation/new-draft';
+import { storable } from '$lib/calculation/storable';
 import { recordAudit } from '../access/audit';
 import { requireAction } from '../access/can';
 import { ConflictError, InvalidInputError, NotFoundError } from '../access/errors';
@@ -27,7 +28,7 @@ export async function createCalculation(
 	db: Database = database()
 ): Promise<string> {
 	requireAction(membership, 'calculation.write');
-	const title = given.title.trim();
+	const title = storable(given.title).trim();
 	if (title === '')
 		throw new InvalidInputError('Give it a title.', { title: 'Title: give it a name that you find again.' });
 	if (title.length > 200) {
@@ -115,7 +116,10 @@ export async function saveDraft(
 			.where(eq(calculations.id, id))
 			.for('update');
 		if (locked === undefined) throw new NotFoundError('calculation');
-		const title = given.title?.trim().slice(0, 200) || locked.title;
+		const title =
+			storable(given.title ?? '')
+				.trim()
+				.slice(0, 200) || locked.title;
 		const [same] = (
 			await tx.execute<{ same: boolean }>(
 				sql`select ${JSON.stringify(draft)}::jsonb = ${JSON.stringify(locked.draft)}::jsonb as same`

@@ -1,5 +1,6 @@
 import { and, eq, isNotNull, isNull, sql } from 'drizzle-orm';
 import { z } from 'zod';
+import { storable } from '$lib/calculation/storable';
 import { emptyReportText, type ReportText } from '$lib/report/text';
 import { recordAudit } from '../access/audit';
 import { requireAction } from '../access/can';
@@ -12,14 +13,15 @@ import { touchDossier } from '../dossiers/touch';
 import { getReport, runsOf, type ReportView } from './load';
 import { modelOf } from './model';
 
-const long = z.string().max(20_000, 'At most 20 000 characters.');
+const long = z.string().max(20_000, 'At most 20 000 characters.').transform(storable);
 
 const change = z.strictObject({
 	title: z
 		.string()
 		.trim()
 		.min(1, 'Title: give the report a title.')
-		.max(200, 'Title: at most 200 characters.'),
+		.max(200, 'Title: at most 200 characters.')
+		.transform(storable),
 	text: z.strictObject({
 		question: long,
 		background: long,

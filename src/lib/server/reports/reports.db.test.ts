@@ -125,7 +125,8 @@ describe('reports', () => {
 
 	it('refuse a save from an older version, unknown fields and foreign runs', async () => {
 		const id = await make();
-		await change(id, { commentary: 'first' });
+		await change(id, { commentary: 'fir\0st\ud800' });
+		expect((await getReport(author, id, db)).text.commentary).toBe('first');
 		await expect(change(id, { commentary: 'second' }, { baseVersion: 1 })).rejects.toThrow(ConflictError);
 		await expect(change(id, {}, { state: 'issued' })).rejects.toThrow(InvalidInputError);
 		await expect(change(id, {}, { title: ' ' })).rejects.toMatchObject({
