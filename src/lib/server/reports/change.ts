@@ -4,7 +4,7 @@ import { storable } from '$lib/calculation/storable';
 import { emptyReportText, type ReportText } from '$lib/report/text';
 import { recordAudit } from '../access/audit';
 import { requireAction } from '../access/can';
-import { ConflictError, ForbiddenError, InvalidInputError, NotFoundError } from '../access/errors';
+import { ConflictError, InvalidInputError, NotFoundError } from '../access/errors';
 import type { Membership } from '../access/membership';
 import { database, type Database, type Queryable } from '../db';
 import { organisations, reports } from '../db/schema';
@@ -103,7 +103,7 @@ export async function createReport(
 /** What may still be written in: a draft, or one that came back. */
 function requireOpen(report: ReportView): void {
 	if (report.state !== 'draft' && report.state !== 'returned') {
-		throw new ForbiddenError(
+		throw new ConflictError(
 			`Report ${report.number} is ${report.state}; it can no longer be changed. A correction is a new revision.`
 		);
 	}

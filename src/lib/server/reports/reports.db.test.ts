@@ -214,8 +214,8 @@ describe('issuing', () => {
 		const rows = await db.select().from(issues).where(eq(issues.reportId, id));
 		expect(rows).toHaveLength(1);
 		expect(rows[0]?.code).toMatch(/^[2-9A-HJKMNP-TV-Z]{4}-[2-9A-HJKMNP-TV-Z]{4}$/);
-		await expect(change(id, { commentary: 'late' })).rejects.toThrow(ForbiddenError);
-		await expect(deleteReport(author, id, db)).rejects.toThrow(ForbiddenError);
+		await expect(change(id, { commentary: 'late' })).rejects.toThrow(ConflictError);
+		await expect(deleteReport(author, id, db)).rejects.toThrow(ConflictError);
 		await expect(issuedFile(author, id, db)).rejects.toThrow(NotFoundError);
 	});
 
