@@ -30,6 +30,7 @@ export function isUntouchedDefault(input: NumberInput, assumption: AssumptionDra
 
 /**
  * An assumption whose value was changed no longer has the default's source; one set back to the default has it again.
+ * @returns the same object where nothing was to be settled
  */
 export function settleSource(input: NumberInput, assumption: AssumptionDraft): AssumptionDraft {
 	const isDefault =
@@ -42,7 +43,24 @@ export function settleSource(input: NumberInput, assumption: AssumptionDraft): A
 	if (assumption.source.kind === null && isDefault) {
 		return { ...assumption, source: newAssumption(input).source };
 	}
+	const words = newAssumption(input).source.text;
+	if (assumption.source.kind === 'default' && assumption.source.text !== words) {
+		return { ...assumption, source: { ...assumption.source, text: words } };
+	}
 	return assumption;
+}
+
+/**
+ * A draft in which only the method's own values, in the method's own words, are called its defaults: what a browser
+ * sends may say otherwise, and a report would print it.
+ */
+export function settleSources(draft: CalculationDraft, method: Method): CalculationDraft {
+	const assumptions = { ...draft.assumptions };
+	for (const input of numberInputs(method)) {
+		const assumption = assumptions[input.id];
+		if (assumption !== undefined) assumptions[input.id] = settleSource(input, assumption);
+	}
+	return { ...draft, assumptions };
 }
 
 function readAssumption(form: Form, input: NumberInput, before: AssumptionDraft): AssumptionDraft {

@@ -2,7 +2,7 @@ import { describe, expect, it } from 'vitest';
 import { methodById } from '../methods';
 import type { CalculationDraft } from './draft';
 import { draftSchema } from './draft-schema';
-import { readComparison, readEvaluation, readGroup, settleSource } from './form-fields';
+import { readComparison, readEvaluation, readGroup, settleSource, settleSources } from './form-fields';
 import { chooseKind, chooseMethod, newDraft, numberInputs } from './new-draft';
 import { fieldOfProblem, toRequest } from './to-request';
 
@@ -118,6 +118,28 @@ describe('reading a submitted form', () => {
 		const changed = settleSource(input, { ...fresh, value: '0.5' });
 		expect(changed.source.kind).toBeNull();
 		expect(settleSource(input, { ...changed, value: fresh.value }).source).toEqual(fresh.source);
+	});
+
+	it('calls nothing a default of the method that is none, in no other words than the method’s', () => {
+		const input = numberInputs(sunlit).find((known) => known.default !== undefined);
+		const draft = chooseMethod(newDraft('find-value'), sunlit);
+		const fresh = draft.assumptions[input?.id ?? ''];
+		if (input === undefined || fresh === undefined) throw new Error('no default');
+		expect(settleSource(input, fresh)).toBe(fresh);
+		const settled = (value: string, text: string) =>
+			settleSources(
+				{
+					...draft,
+					assumptions: {
+						...draft.assumptions,
+						[input.id]: { ...fresh, value, source: { ...fresh.source, text } }
+					}
+				},
+				sunlit
+			).assumptions[input.id]?.source;
+		expect(settled('0.123', 'Endorsed by an authority')).toEqual({ kind: null, text: '', evidenceId: null });
+		expect(settled(fresh.value, 'Endorsed by an authority')).toEqual(fresh.source);
+		expect(settleSources(draft, sunlit)).toEqual(draft);
 	});
 
 	it('ignores units, kinds and outputs that are not offered', () => {

@@ -1,4 +1,6 @@
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { chooseMethod } from '$lib/calculation/new-draft';
+import { methodById } from '$lib/methods';
 import { ConflictError, ForbiddenError, InvalidInputError, NotFoundError } from '../access/errors';
 import type { Membership, Role } from '../access/membership';
 import type { Database } from '../db';
@@ -104,6 +106,21 @@ describe('calculations', () => {
 		await saveDraft(author, id, { draft: typed, baseVersion: version, title: 'Roof\0' }, db);
 		const saved = await getCalculation(author, id, db);
 		expect([saved.title, saved.draft.evaluation.seed]).toEqual(['Roof', 'noonmark']);
+	});
+
+	it('take no word of a browser for what is the method’s default', async () => {
+		const id = await make();
+		const { draft, version } = await getCalculation(author, id, db);
+		const method = methodById('solar-reflectance-index');
+		if (method === undefined) throw new Error('no method');
+		const chosen = chooseMethod(draft, method);
+		const air = chosen.assumptions.airTemperature;
+		if (air === undefined) throw new Error('no air temperature');
+		const forged = { ...air, value: '350', source: { ...air.source, text: 'Endorsed by an authority' } };
+		const sent = { ...chosen, assumptions: { ...chosen.assumptions, airTemperature: forged } };
+		await saveDraft(author, id, { draft: sent, baseVersion: version }, db);
+		const saved = (await getCalculation(author, id, db)).draft.assumptions.airTemperature;
+		expect(saved).toMatchObject({ value: '350', source: { kind: null, text: '' } });
 	});
 
 	it('keep versions that can be read and restored', async () => {

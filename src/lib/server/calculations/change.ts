@@ -1,8 +1,10 @@
 import { and, desc, eq, isNotNull, sql } from 'drizzle-orm';
 import type { CalculationDraft, QuestionKind } from '$lib/calculation/draft';
 import { draftSchema } from '$lib/calculation/draft-schema';
+import { settleSources } from '$lib/calculation/form-fields';
 import { newDraft } from '$lib/calculation/new-draft';
 import { storable } from '$lib/calculation/storable';
+import { methodById } from '$lib/methods';
 import { recordAudit } from '../access/audit';
 import { requireAction } from '../access/can';
 import { ConflictError, InvalidInputError, NotFoundError } from '../access/errors';
@@ -107,7 +109,8 @@ export async function saveDraft(
 	if (!parsed.success) {
 		throw new InvalidInputError('What was sent is not a calculation; reload the page and try again.');
 	}
-	const draft = parsed.data;
+	const method = methodById(parsed.data.method ?? '');
+	const draft = method === undefined ? parsed.data : settleSources(parsed.data, method);
 	return db.transaction(async (tx) => {
 		const before = await getCalculation(membership, id, tx);
 		const [locked] = await tx
