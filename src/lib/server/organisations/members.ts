@@ -2,6 +2,7 @@ import { and, asc, eq, sql } from 'drizzle-orm';
 import { recordAudit } from '../access/audit';
 import { requireAction } from '../access/can';
 import { ConflictError, InvalidInputError, NotFoundError } from '../access/errors';
+import { limit } from '../access/limit';
 import type { Membership, Role } from '../access/membership';
 import { findAccountByEmail } from '../accounts/people';
 import { database, type Database, type Queryable, type Transaction } from '../db';
@@ -37,7 +38,8 @@ export async function listMembers(
 
 /**
  * Adds somebody who has an account already.
- * @throws InvalidInputError when no confirmed account has the address, ConflictError when they are a member
+ * @throws InvalidInputError when no confirmed account has the address, ConflictError when they are a member,
+ * TooManyRequestsError after 60 tries of one owner within an hour
  */
 export async function addMember(
 	membership: Membership | null,
@@ -46,6 +48,8 @@ export async function addMember(
 ): Promise<void> {
 	requireAction(membership, 'members.manage');
 	requireRoles(input.roles);
+	// The answer tells whether an address has an account, so nobody may ask for many.
+	await limit(`add-member:${membership.userId}`, 60, 3600, db);
 	await db.transaction(async (tx) => {
 		const account = await findAccountByEmail(tx, input.email);
 		if (account === null || !account.confirmed) {

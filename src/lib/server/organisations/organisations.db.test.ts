@@ -123,6 +123,16 @@ describe('members', () => {
 		await expect(listMembers(own, db)).rejects.toThrow(NotFoundError);
 	});
 
+	it('are not a way to ask for thousands of addresses whether they have an account', async () => {
+		const { membership } = await owned();
+		const ask = (i: number) =>
+			addMember(membership, { email: `guess-${i}@nowhere.example`, roles: ['reader'] }, db);
+		const tries = await Promise.allSettled(Array.from({ length: 64 }, (_, i) => ask(i)));
+		const reasons = tries.map((one) => (one.status === 'rejected' ? (one.reason as unknown) : null));
+		expect(reasons.filter((reason) => reason instanceof InvalidInputError)).toHaveLength(60);
+		expect(reasons.filter((reason) => reason instanceof TooManyRequestsError)).toHaveLength(4);
+	});
+
 	it('need a confirmed account, are added once and with a role', async () => {
 		const { membership, person } = await withMember(['reader']);
 		const add = (email: string, roles: readonly Role[] = ['reader']) =>
