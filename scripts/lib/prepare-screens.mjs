@@ -49,9 +49,9 @@ async function signIn(page, { email, password }) {
 	await page.waitForURL(/\/dossiers/);
 }
 
-/** @param {Page} page a list @param {string} path @param {string} title @returns {Promise<string>} address */
+/** @param {Page} page @param {string} path of a list @param {string} title @returns {Promise<string>} address */
 async function linkIn(page, path, title) {
-	await visit(page, path);
+	await visit(page, `${path}?q=${encodeURIComponent(title)}`);
 	const href = await page.getByRole('main').getByRole('link', { name: title }).first().getAttribute('href');
 	if (href === null) throw new Error(`${path} has no link “${title}”.`);
 	return href.replace(/\/(question|check|result)$/, '');
@@ -84,31 +84,38 @@ async function signUp(page, email, password) {
 	await page.waitForURL(/\/sign-up\/confirm/);
 }
 
+const name = () => `runa.aldous.${randomUUID().slice(0, 8)}@example.org`;
+
 /**
- * A person with a confirmed account and no organisation, and the links of one who has not confirmed.
+ * A person with a confirmed account and no organisation.
  * @param {Page} page
  * @param {string} mailReader
+ * @returns {Promise<StoredState>}
  */
 async function newcomer(page, mailReader) {
-	const password = randomUUID();
-	const name = () => `runa.aldous.${randomUUID().slice(0, 8)}@example.org`;
-	const waiting = name();
-	await signUp(page, waiting, password);
-	const confirmLink = await linkInMail(mailReader, waiting, '/confirm/');
-	const confirmed = name();
-	await signUp(page, confirmed, password);
-	await visit(page, await linkInMail(mailReader, confirmed, '/confirm/'));
+	const [email, password] = [name(), randomUUID()];
+	await signUp(page, email, password);
+	await visit(page, await linkInMail(mailReader, email, '/confirm/'));
 	await page.getByLabel('Password', { exact: true }).fill(password);
 	await page.getByRole('main').getByRole('button', { name: 'Confirm and sign in' }).click();
 	await page.waitForURL(/\/organisation\/new/);
-	const state = await page.context().storageState();
-	await page.context().clearCookies();
+	return await page.context().storageState();
+}
+
+/**
+ * The links mailed to a person who has signed up and forgotten the password before confirming.
+ * @param {Page} page
+ * @param {string} mailReader
+ */
+async function mailedLinks(page, mailReader) {
+	const email = name();
+	await signUp(page, email, randomUUID());
+	const confirmLink = await linkInMail(mailReader, email, '/confirm/');
 	await visit(page, '/reset');
-	await page.getByLabel('E-mail address').fill(waiting);
+	await page.getByLabel('E-mail address').fill(email);
 	await page.getByRole('button', { name: 'Send the link' }).click();
 	await page.getByRole('heading', { name: 'Look into your mailbox' }).waitFor();
-	const resetLink = await linkInMail(mailReader, waiting, '/reset/');
-	return { state, confirmLink, resetLink };
+	return { confirmLink, resetLink: await linkInMail(mailReader, email, '/reset/') };
 }
 
 /** @param {Page} page newcomer signed in @returns {Promise<StoredState>} with an organisation that has no work */
@@ -169,9 +176,10 @@ async function consultantsWork(page) {
  * @returns {Promise<Places>}
  */
 export async function prepareScreens(browser, { address, mailReader, signIns }) {
-	/** @template T @param {(page: Page) => Promise<T>} work @param {StoredState} [storageState] */
-	const inBrowser = async (work, storageState) => {
-		const context = await browser.newContext({ baseURL: address, storageState });
+	/** @template T @param {(page: Page) => Promise<T>} work */
+	const inBrowser = async (work) => {
+		const context = await browser.newContext({ baseURL: address });
+		context.setDefaultTimeout(30_000);
 		try {
 			return await work(await context.newPage());
 		} finally {
@@ -184,8 +192,12 @@ export async function prepareScreens(browser, { address, mailReader, signIns }) 
 		if (person === undefined) throw new Error(`The demo has nobody in ${organisation}.`);
 		return person;
 	};
-	const fresh = await inBrowser((page) => newcomer(page, mailReader));
-	const founder = await inBrowser((page) => found(page), fresh.state);
+	const links = await inBrowser((page) => mailedLinks(page, mailReader));
+	const without = await inBrowser((page) => newcomer(page, mailReader));
+	const founder = await inBrowser(async (page) => {
+		await newcomer(page, mailReader);
+		return await found(page);
+	});
 	const consultant = await inBrowser(async (page) => {
 		await signIn(page, founderOf('Tallis Brook Consulting'));
 		return { work: await consultantsWork(page), state: await page.context().storageState() };
@@ -195,17 +207,14 @@ export async function prepareScreens(browser, { address, mailReader, signIns }) 
 		const claim = await linkIn(page, '/calculations', 'The 38 degC of the notice');
 		return { claim, state: await page.context().storageState() };
 	});
-	// Founding an organisation made the newcomer's own session its member, so another newcomer stays without one.
-	const without = await inBrowser((page) => newcomer(page, mailReader));
 	return {
 		address,
 		...consultant.work,
 		claim: reporter.claim,
-		confirmLink: without.confirmLink,
-		resetLink: without.resetLink,
+		...links,
 		states: {
 			nobody: undefined,
-			newcomer: without.state,
+			newcomer: without,
 			founder,
 			consultant: consultant.state,
 			reporter: reporter.state

@@ -17,7 +17,7 @@ interface Ids {
 const idIn = (address: string | null): string => /[0-9a-f]{8}-[0-9a-f-]{27}/.exec(address ?? '')?.[0] ?? '';
 
 async function first(page: Page, list: string, link: string): Promise<string> {
-	await page.goto(list);
+	await page.goto(`${list}?q=${encodeURIComponent(link)}`);
 	return idIn(await page.getByRole('link', { name: link }).first().getAttribute('href'));
 }
 
