@@ -5,6 +5,7 @@ import { fieldOfProblem, toRequest } from '$lib/calculation/to-request';
 import type { CalculationDraft } from '$lib/calculation/draft';
 import type { ComputeRequest, ComputeResult } from '$lib/calculation/types';
 import { methodById } from '$lib/methods';
+import { engineVersion } from '$lib/record';
 import { recordAudit } from '../access/audit';
 import { requireAction } from '../access/can';
 import { InvalidInputError, NotFoundError } from '../access/errors';
@@ -114,13 +115,16 @@ async function sameRun(
 		.select({
 			id: runs.id,
 			state: runs.state,
+			engineVersion: runs.engineVersion,
 			same: sql<boolean>`${runs.draft} - 'visited' = ${JSON.stringify(draft)}::jsonb - 'visited'`
 		})
 		.from(runs)
 		.where(and(eq(runs.calculationId, calculationId), eq(runs.organisationId, membership.organisationId)))
 		.orderBy(desc(runs.createdAt))
 		.limit(1);
-	return latest?.same === true && latest.state !== 'failed' ? latest.id : undefined;
+	if (latest?.same !== true || latest.state === 'failed') return undefined;
+	// What an earlier version of the code computed need not be what this one would: it is computed anew.
+	return latest.state !== 'done' || latest.engineVersion === engineVersion ? latest.id : undefined;
 }
 
 /** The newest run of a calculation, or null before the first. */

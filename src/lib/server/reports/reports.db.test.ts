@@ -3,13 +3,14 @@ import pg from 'pg';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { chooseMethod } from '$lib/calculation/new-draft';
 import { methodById } from '$lib/methods';
+import { engineVersion } from '$lib/record';
 import { ConflictError, ForbiddenError, InvalidInputError, NotFoundError } from '../access/errors';
 import type { Membership } from '../access/membership';
 import { createCalculation, saveDraft } from '../calculations/change';
 import { getCalculation } from '../calculations/load';
 import { getRun, latestRun, startRun } from '../calculations/runs';
 import type { Database } from '../db';
-import { dossiers, issues, organisations, previews, reports, users } from '../db/schema';
+import { dossiers, issues, organisations, previews, reports, runs, users } from '../db/schema';
 import { installQueues } from '../jobs/install';
 import { setTestEnvironment } from '../testing/environment';
 import { testDatabase } from '../testing/db';
@@ -107,6 +108,19 @@ beforeAll(async () => {
 });
 afterAll(async () => {
 	await drop();
+});
+
+describe('runs', () => {
+	it('are computed anew where an earlier version of the code computed the same draft', async () => {
+		const first = await computedTile(author, dossierId);
+		const { calculationId } = await getRun(author, first, db);
+		expect(await startRun(author, calculationId, db)).toBe(first);
+		await db.update(runs).set({ engineVersion: '0.0.1' }).where(eq(runs.id, first));
+		const second = await startRun(author, calculationId, db);
+		expect(second).not.toBe(first);
+		expect((await getRun(author, second, db)).engineVersion).toBe(engineVersion);
+		expect(await startRun(author, calculationId, db)).toBe(second);
+	});
 });
 
 describe('reports', () => {
