@@ -12,7 +12,7 @@ import { run } from './run.mjs';
 const tool = (name, path) => join(root, 'node_modules', name, path);
 
 /** A stage may hang on a fault; it then counts as failed instead of holding up all others. */
-const patience = 12 * 60_000;
+const patience = 15 * 60_000;
 
 /**
  * A command that passes or fails as a whole: one check.
