@@ -71,6 +71,32 @@ describe('names at the curves', () => {
 			expect(Math.min(...distances)).toBeGreaterThan(5.5);
 		});
 	});
+
+	it('stand elsewhere with a sample of their line where the curves leave no room', () => {
+		const flat = (y: number) => ({
+			points: [
+				{ x: 0, y },
+				{ x: 390, y }
+			],
+			labelWidth: 70,
+			labelHeight: 11
+		});
+		const places = placeLabels([flat(100), flat(108), flat(116)], { width: 390, height: 200 });
+		expect(places.map((place) => place?.sample ?? false)).toEqual([false, true, false]);
+		const crowded: Series = {
+			...series,
+			curves: [300, 290, 280].map((level, i) => ({
+				id: `c${i}`,
+				name: `curve ${i}`,
+				unit: 'K',
+				role: 'sunlit',
+				values: xs.map((x) => level - 250 * x)
+			}))
+		};
+		const spec = JSON.stringify(figureSpec(crowded, { width: 460, height: 140, yName: 'temperature' }));
+		// The second curve of one colour is told by its dash, on the line and before its name.
+		expect(spec.split('"strokeDash":[7,3]')).toHaveLength(3);
+	});
 });
 
 describe('a series for a reader', () => {

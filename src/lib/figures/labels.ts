@@ -17,7 +17,12 @@ export interface LabelPlace {
 	/** Centre of the label. */
 	x: number;
 	y: number;
+	/** Away from its curve: room for a sample of the line is kept at its left, within the label's width. */
+	sample?: boolean;
 }
+
+/** Room for a sample of the line before a name that stands away from its curve, pixels. */
+export const sampleRoom = 24;
 
 interface Box {
 	left: number;
@@ -118,7 +123,7 @@ export function placeLabels(
 	});
 }
 
-/** Room for a label anywhere in the frame, topmost and rightmost first; its colour then names the curve. */
+/** Room for a label anywhere in the frame, topmost and rightmost first; a sample of the line then names the curve. */
 function freeCandidate(
 	curve: CurvePixels,
 	curves: readonly CurvePixels[],
@@ -126,13 +131,13 @@ function freeCandidate(
 	frame: { width: number; height: number }
 ): Candidate | undefined {
 	const { labelHeight } = curve;
-	const half = curve.labelWidth / 2;
+	const half = (curve.labelWidth + sampleRoom) / 2;
 	for (let y = labelHeight; y < frame.height - labelHeight; y += 4) {
 		for (let x = frame.width - half; x > half; x -= 8) {
 			const box = { left: x - half, right: x + half, top: y - labelHeight / 2, bottom: y + labelHeight / 2 };
 			if (curves.some((other) => verticalClearance(other.points, box) < 4)) continue;
 			if (taken.some((other) => boxDistance(other, box) < 4)) continue;
-			return { place: { x, y }, box, score: 0 };
+			return { place: { x, y, sample: true }, box, score: 0 };
 		}
 	}
 	return undefined;

@@ -4,7 +4,7 @@
  */
 import type { TopLevelSpec } from 'vega-lite';
 import type { Series } from '../calculation/types';
-import { placeLabels, type CurvePixels, type LabelPlace } from './labels';
+import { placeLabels, sampleRoom, type CurvePixels, type LabelPlace } from './labels';
 import { palette, roleColours } from './palette';
 import { axisScale, position, type AxisScale } from './scale';
 
@@ -237,18 +237,26 @@ function textLayer(
 	};
 }
 
-function curveLayers(series: Series, g: Geometry): Layer[] {
+/** Dash of each curve: curves of one role share a colour and are told apart by it. */
+function dashesOf(series: Series): (readonly number[])[] {
 	const seen: Record<string, number> = {};
+	return series.curves.map(({ role }) => {
+		const nth = seen[role] ?? 0;
+		seen[role] = nth + 1;
+		return dashes[nth % dashes.length] ?? [];
+	});
+}
+
+function curveLayers(series: Series, g: Geometry): Layer[] {
+	const patterns = dashesOf(series);
 	return series.curves.map((curve, index) => {
-		const nth = seen[curve.role] ?? 0;
-		seen[curve.role] = nth + 1;
 		return {
 			data: { values: series.x.values.map((x, i) => ({ i, x, y: curve.values[i] })) },
 			mark: {
 				type: 'line',
 				stroke: roleColours(curve.role).line,
 				strokeWidth: 1.6,
-				...dashed(dashes[nth % dashes.length] ?? []),
+				...dashed(patterns[index] ?? []),
 				strokeJoin: 'round',
 				clip: false
 			},
@@ -272,18 +280,35 @@ function nameLayers(series: Series, options: FigureOptions, g: Geometry): Layer[
 	];
 	if (series.curves.length === 1 && options.yName === undefined) return layers;
 	const curves = series.curves.map((curve) => curvePixels(series, curve, g));
+	const patterns = dashesOf(series);
 	const obstacles = markObstacles(options, g);
 	const places = placeLabels(curves, { width: g.width, height: g.height }, obstacles);
 	series.curves.forEach((curve, index) => {
 		const place = places[index] ?? fallbackPlace(curves[index], index);
-		layers.push(textLayer(curve.name, place, roleColours(curve.role).line, 'center', g.fontSize));
+		const { line } = roleColours(curve.role);
+		if (place.sample !== true) {
+			layers.push(textLayer(curve.name, place, line, 'center', g.fontSize));
+			return;
+		}
+		const left = place.x - ((curves[index]?.labelWidth ?? 0) + sampleRoom) / 2;
+		layers.push(sampleLayer({ x: left, y: place.y }, line, patterns[index] ?? []));
+		layers.push(textLayer(curve.name, { x: left + sampleRoom, y: place.y }, line, 'left', g.fontSize));
 	});
 	return layers;
 
-	/** No free place: the names stand one below the other at the top right, in their colours. */
+	/** No free place: the names stand one below the other at the top right, each with a sample of its line. */
 	function fallbackPlace(curve: CurvePixels | undefined, index: number): LabelPlace {
-		return { x: g.width - (curve?.labelWidth ?? 0) / 2, y: 8 + index * 14 };
+		return { x: g.width - ((curve?.labelWidth ?? 0) + sampleRoom) / 2, y: 8 + index * 14, sample: true };
 	}
+}
+
+/** A short piece of a curve's line, before a name that does not stand at the curve. */
+function sampleLayer(from: { x: number; y: number }, stroke: string, dash: readonly number[]): Layer {
+	return {
+		data: { values: [{}] },
+		mark: { type: 'rule', stroke, strokeWidth: 1.6, ...dashed(dash) },
+		encoding: { x: { value: from.x }, x2: { value: from.x + sampleRoom - 5 }, y: { value: from.y } }
+	};
 }
 
 function curvePixels(series: Series, curve: Series['curves'][number], g: Geometry): CurvePixels {
