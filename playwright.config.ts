@@ -14,7 +14,7 @@ export default defineConfig({
 	workers: 2,
 	retries: 0,
 	forbidOnly: true,
-	timeout: 90_000,
+	timeout: 180_000,
 	expect: { timeout: 15_000 },
 	use: {
 		baseURL: address,

@@ -143,7 +143,7 @@ const accountScreens = [
 		who: 'newcomer',
 		open: async (page) => {
 			await visit(page, '/organisation/new');
-			await press(page, 'Found it');
+			await press(page, 'Make the organisation');
 			await faultsShown(page);
 		}
 	}

@@ -13,6 +13,8 @@ const tool = (name, path) => join(root, 'node_modules', name, path);
 
 /** A stage may hang on a fault; it then counts as failed instead of holding up all others. */
 const patience = 15 * 60_000;
+/** The browser goes through every screen at both widths and in both schemes. */
+const browserPatience = 45 * 60_000;
 
 /**
  * A command that passes or fails as a whole: one check.
@@ -100,7 +102,7 @@ export async function playwrightStage({ env, reports }) {
 	const { code } = await run(process.execPath, [programs.playwright, 'test', '--reporter=list,json'], {
 		cwd: root,
 		env: { ...env, PLAYWRIGHT_JSON_OUTPUT_NAME: file },
-		timeout: patience
+		timeout: browserPatience
 	});
 	const stats = readReport(file)?.stats;
 	if (stats?.skipped > 0) console.log(`${stats.skipped} browser tests did not run.`);

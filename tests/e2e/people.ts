@@ -56,7 +56,7 @@ export async function foundOrganisation(page: Page, name: string): Promise<void>
 	await settled(page);
 	await page.getByLabel('Name of the organisation').fill(name);
 	await page.getByLabel('Letters before report numbers').fill('RA');
-	await page.getByRole('button', { name: 'Found it' }).click();
+	await page.getByRole('button', { name: 'Make the organisation' }).click();
 	await expect(page).toHaveURL(/\/dossiers$/);
 }
 

@@ -29,6 +29,14 @@ function distribution(
 ): DistributionSpec | undefined {
 	const spread = spreadOf(assumption.spread);
 	if (spread.type === 'exact') return undefined;
+	if (
+		(spread.kind === 'normal' || spread.kind === 'students-t') &&
+		assumption.source.spreadMeans === 'tolerance'
+	) {
+		faults[assumptionField(input.id, 'spread')] =
+			`${input.name}: its “±” is said to be a tolerance, but it is entered as a standard uncertainty. Choose “half range, even”, or say that it is a standard uncertainty.`;
+		return undefined;
+	}
 	const parameters: Record<string, number | number[]> = {};
 	let complete = true;
 	for (const parameter of spread.parameters) {

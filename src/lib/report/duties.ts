@@ -49,7 +49,7 @@ function runDuties(model: ReportModel, run: RunModel): Duty[] {
 	if (result.evaluation.converged === false) {
 		duties.push({
 			code: 'not-converged',
-			message: `“${run.title}” had not converged when it was stopped: compute it again with more trials.`,
+			message: `“${run.title}” was computed with too few trials for this coverage: compute it again with more.`,
 			place
 		});
 	}

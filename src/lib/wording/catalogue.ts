@@ -158,7 +158,7 @@ export const britishEnglish = {
 		redrawn: (count: string): string =>
 			`Trials that drew a physically impossible value were drawn again (${count}); the distributions are truncated accordingly.`,
 		notConverged:
-			'The trials had not converged when they were stopped: the digits printed are not all earned.',
+			'The trials are fewer than two settled digits ask for at this coverage: the last printed digit may change with the seed.',
 		independent: 'The inputs were taken as independent of each other.',
 		correlated: (pairs: string): string =>
 			`Correlations taken into account: ${pairs}. All other inputs were taken as independent.`,

@@ -25,7 +25,11 @@ function spreadWords(assumption: AssumptionDraft): string {
 	const spread = spreadOf(assumption.spread);
 	if (spread.kind === 'exact') return 'taken as exact';
 	const parameters = spread.parameters
-		.map(({ id, label }) => `${label.toLowerCase()} ${assumption.spreadValues[id] ?? '?'}`)
+		.map(({ id, label, measure, list }) => {
+			const typed = assumption.spreadValues[id] ?? '';
+			const unit = measure === 'number' ? '' : assumption.unit;
+			return `${label.toLowerCase()} ${list === true || typed === '' ? typed || '?' : understood(typed, unit)}`;
+		})
 		.join(', ');
 	return `${spread.label}${parameters === '' ? '' : `: ${parameters}`}`;
 }
@@ -69,7 +73,11 @@ function assumptionRow(
 		label,
 		value: understood(assumption.value, assumption.unit),
 		detail: [spreadWords(assumption), source].filter(Boolean).join('; '),
-		...(assumption.source.kind === null ? { warning: 'no source yet' } : {}),
+		...(assumption.source.kind === null
+			? { warning: 'no source yet' }
+			: assumption.source.kind === 'not-sure'
+				? { warning: 'source not settled; a report needs it' }
+				: {}),
 		href
 	};
 }
@@ -143,8 +151,10 @@ export function checkRows(
 	rows.push({
 		label: 'Uncertainty',
 		value:
-			evaluation.propagation === 'monte-carlo' ? `Monte Carlo, ${evaluation.trials} trials` : 'first order',
-		detail: `${evaluation.coverage} % interval, ${evaluation.interval === 'symmetric' ? 'equal tails' : 'shortest'}${
+			evaluation.propagation === 'monte-carlo'
+				? `Monte Carlo, ${understood(evaluation.trials, '')} trials`
+				: 'first order',
+		detail: `${understood(evaluation.coverage, '%')} interval, ${evaluation.interval === 'symmetric' ? 'equal tails' : 'shortest'}${
 			draft.correlations.length === 0
 				? '; assumptions taken as independent'
 				: `; ${draft.correlations.length} correlated pairs`

@@ -9,6 +9,7 @@ import { engineVersion } from '$lib/record';
 import { recordAudit } from '../access/audit';
 import { requireAction } from '../access/can';
 import { InvalidInputError, NotFoundError } from '../access/errors';
+import { limit } from '../access/limit';
 import type { Membership } from '../access/membership';
 import { database, type Database, type Queryable } from '../db';
 import { runs } from '../db/schema';
@@ -17,7 +18,7 @@ import { finishedRun } from './finish-run';
 import { getCalculation } from './load';
 
 /** Up to so many trials are computed while the page waits: a fraction of a second. More go to the queue. */
-export const trialsAtOnce = 1_000_000;
+export const trialsAtOnce = 200_000;
 
 export interface RunView {
 	id: string;
@@ -64,6 +65,7 @@ export async function startRun(
 	db: Database = database()
 ): Promise<string> {
 	requireAction(membership, 'calculation.write');
+	await limit(`run:${membership.userId}`, 120, 60, db);
 	const { draft } = await getCalculation(membership, calculationId, db);
 	const method = draft.method === null ? undefined : methodById(draft.method);
 	if (method === undefined)

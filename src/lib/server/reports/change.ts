@@ -10,7 +10,7 @@ import { database, type Database, type Queryable } from '../db';
 import { organisations, reports } from '../db/schema';
 import { findDossier } from '../dossiers/find';
 import { touchDossier } from '../dossiers/touch';
-import { getReport, runsOf, type ReportView } from './load';
+import { getReport, runChoices, runsOf, type ReportView } from './load';
 import { modelOf } from './model';
 
 const long = z.string().max(20_000, 'At most 20 000 characters.').transform(storable);
@@ -68,6 +68,7 @@ export async function createReport(
 		const dossier = await findDossier(tx, membership, dossierId);
 		const runIds = given.runId === null ? [] : [given.runId];
 		await runsOf(membership, runIds, dossierId, tx);
+		await requireLiving(membership, dossierId, runIds, tx);
 		const number = await nextNumber(membership, tx);
 		const [row] = await tx
 			.insert(reports)
@@ -98,6 +99,23 @@ export async function createReport(
 		await recordAudit(tx, membership, 'report.create', row.id, { number });
 		return row.id;
 	});
+}
+
+/** Results of a calculation that was put away are no longer taken into a report. */
+async function requireLiving(
+	membership: Membership,
+	dossierId: string,
+	added: readonly string[],
+	db: Queryable
+): Promise<void> {
+	const living = await runChoices(membership, dossierId, [], db);
+	const calculations = new Set(living.map(({ calculationId }) => calculationId));
+	const chosen = await runsOf(membership, added, dossierId, db);
+	if (chosen.some(({ run }) => !calculations.has(run.calculationId))) {
+		throw new InvalidInputError('One of the results belongs to a deleted calculation.', {
+			runs: 'One of the results belongs to a deleted calculation. Bring it back first, or choose another.'
+		});
+	}
 }
 
 /** What may still be written in: a draft, or one that came back. */
@@ -149,6 +167,8 @@ export async function saveReport(
 			.for('update');
 		if (locked === undefined) throw new NotFoundError('report');
 		requireOpen({ ...before, state: locked.state });
+		const added = runIds.filter((run) => !locked.runIds.includes(run));
+		await requireLiving(membership, before.dossier.id, added, tx);
 		if (locked.version !== baseVersion) {
 			throw new ConflictError(
 				'This report was saved elsewhere since you opened it. Copy what you typed, then reload to see the newer version.'

@@ -1,5 +1,6 @@
 import { X509Certificate } from 'node:crypto';
 import { and, desc, eq, sql } from 'drizzle-orm';
+import { engineVersion } from '$lib/record';
 import { unmetDuties, type Duty, type ReportModel } from '$lib/report';
 import { recordAudit } from '../access/audit';
 import { requireAction } from '../access/can';
@@ -23,6 +24,8 @@ export interface IssueView {
 	size: number | null;
 	requestedAt: Date;
 	issuedAt: Date | null;
+	/** What was frozen for print; the dossier and the calculations may have changed since. */
+	printed: { addressee: string; results: string[] };
 }
 
 const columns = {
@@ -33,7 +36,8 @@ const columns = {
 	sha256: issues.sha256,
 	size: issues.size,
 	requestedAt: issues.requestedAt,
-	issuedAt: issues.issuedAt
+	issuedAt: issues.issuedAt,
+	model: issues.model
 };
 
 /** The issue of a report's present revision, or null while it has none. */
@@ -55,7 +59,16 @@ export async function issueOf(
 		)
 		.orderBy(desc(issues.requestedAt))
 		.limit(1);
-	return row ?? null;
+	if (row === undefined) return null;
+	const { model, ...issue } = row;
+	const { addressee, runs } = model as ReportModel;
+	return {
+		...issue,
+		printed: {
+			addressee: addressee === null ? 'none' : [addressee.name, addressee.contact].filter(Boolean).join(', '),
+			results: runs.map(({ title }) => title)
+		}
+	};
 }
 
 /** What the report still owes its reader; empty where it may be issued. */
@@ -69,7 +82,19 @@ export async function dutiesOf(
 		return [{ code: 'no-run', message: 'Choose at least one result to report.', place: 'runs' }];
 	}
 	const circumstances = { verification: null, issueDate: null, authoriser: null };
-	return unmetDuties(await modelOf(membership, report, circumstances, db));
+	return openDuties(await modelOf(membership, report, circumstances, db));
+}
+
+/** The report's own duties, and that every figure is one that this version of the code computes. */
+function openDuties(model: ReportModel): Duty[] {
+	const outdated = model.runs
+		.filter((run) => run.engineVersion !== engineVersion)
+		.map((run) => ({
+			code: 'outdated-run',
+			message: `“${run.title}” was computed by version ${run.engineVersion} of the computing code, and this is ${engineVersion}: compute it again.`,
+			place: `run:${run.id}`
+		}));
+	return [...unmetDuties(model), ...outdated];
 }
 
 async function authoriserOf(membership: Membership, db: Queryable): Promise<{ name: string; role: string }> {
@@ -132,7 +157,7 @@ export async function issueReport(
 			tx
 		);
 		requirePrintable(model);
-		const unmet = unmetDuties(model);
+		const unmet = openDuties(model);
 		if (unmet.length > 0) {
 			throw new InvalidInputError(
 				'The report still owes its reader something.',

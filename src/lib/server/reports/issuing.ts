@@ -3,8 +3,9 @@ import type { ReportModel } from '../../report';
 import { auditEvents, reports } from '../db/schema';
 import type { ReportIssuing } from '../jobs/handlers/issue-report';
 import { PermanentJobError } from '../jobs/job';
-import { organisationSigner } from '../signing/authority';
+import { organisationSigner, rootPem } from '../signing/authority';
 import { signPdf } from '../signing/sign';
+import { verifyReport } from '../verification';
 import { renderReport, UnprintableTextError } from './render';
 
 /* What the worker does for a report: see ../jobs/handlers for when. */
@@ -24,6 +25,20 @@ export function renderPreview(model: ReportModel): Promise<Uint8Array> {
 	return rendered(renderReport(model, { watermark: true }));
 }
 
+/** More trials than this are not computed again here; the command does it for whoever wants to. */
+const checkedTrials = 4_000_000;
+
+/**
+ * Reads the signed file as a stranger would, before anybody gets it: nothing is issued that would not verify.
+ * @throws PermanentJobError with the verifier's reasons
+ */
+async function requireGenuine(pdf: Uint8Array, root: string): Promise<void> {
+	const { verdict, reasons } = await verifyReport(pdf, { rootPem: root, maxTrials: checkedTrials });
+	if (verdict !== 'genuine') {
+		throw new PermanentJobError(`The signed file would not verify (${verdict}): ${reasons.join(' ')}`);
+	}
+}
+
 export const reportIssuing: ReportIssuing = {
 	render(issue) {
 		const model = issue.model as ReportModel;
@@ -41,8 +56,10 @@ export const reportIssuing: ReportIssuing = {
 	async sign(issue, unsigned, db) {
 		const model = issue.model as ReportModel;
 		const { certificateId, signer } = await organisationSigner(db, issue.organisationId);
+		const pdf = await signPdf(unsigned, signer);
+		await requireGenuine(pdf, await rootPem(db));
 		return {
-			pdf: await signPdf(unsigned, signer),
+			pdf,
 			certificateId,
 			issuedAt: new Date(model.dates.issue ?? issue.requestedAt)
 		};

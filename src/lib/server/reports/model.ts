@@ -115,8 +115,7 @@ export async function modelOf(
 				issuedAt: circumstances.issueDate?.toISOString() ?? null,
 				reason: ''
 			}
-		],
-		temperatureUnit: loaded[0]?.run.draft.temperatureUnit ?? 'degC'
+		]
 	};
 	return buildReportModel(source, { methodOf: methodById });
 }

@@ -1,6 +1,7 @@
 import { and, desc, eq, lt, sql } from 'drizzle-orm';
 import { requireAction } from '../access/can';
 import { NotFoundError } from '../access/errors';
+import { limit } from '../access/limit';
 import type { Membership } from '../access/membership';
 import { database, type Database, type Queryable } from '../db';
 import { previews } from '../db/schema';
@@ -24,6 +25,7 @@ export async function requestPreview(
 	db: Database = database()
 ): Promise<string> {
 	requireAction(membership, 'report.read');
+	await limit(`report-preview:${membership.userId}`, 60, 60, db);
 	const report = await getReport(membership, reportId, db);
 	const model = await modelOf(
 		membership,

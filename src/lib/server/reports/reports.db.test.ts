@@ -4,15 +4,18 @@ import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { chooseMethod } from '$lib/calculation/new-draft';
 import { methodById } from '$lib/methods';
 import { engineVersion } from '$lib/record';
+import type { ReportModel } from '$lib/report';
 import { ConflictError, ForbiddenError, InvalidInputError, NotFoundError } from '../access/errors';
 import type { Membership } from '../access/membership';
-import { createCalculation, saveDraft } from '../calculations/change';
+import { createCalculation, deleteCalculation, saveDraft } from '../calculations/change';
 import { getCalculation } from '../calculations/load';
 import { getRun, latestRun, startRun } from '../calculations/runs';
 import type { Database } from '../db';
 import { dossiers, issues, organisations, previews, reports, runs, users } from '../db/schema';
 import { installQueues } from '../jobs/install';
 import { setTestEnvironment } from '../testing/environment';
+import { rootPem } from '../signing/authority';
+import { verifyReport } from '../verification';
 import { testDatabase } from '../testing/db';
 import { createReport, deleteReport, restoreReport, saveReport } from './change';
 import { dutiesOf, issuedFile, issueOf, issueReport } from './issue';
@@ -244,6 +247,47 @@ describe('issuing', () => {
 		const second = await reportIssuing.render(row, db, signal);
 		await db.update(dossiers).set({ client: 'A Client' }).where(eq(dossiers.id, dossierId));
 		expect(Buffer.from(second).equals(Buffer.from(first))).toBe(true);
+	});
+
+	it('hands out only a file that verifies, and says why another one would not', async () => {
+		const id = await make();
+		await issueReport(author, id, db);
+		const [row] = await db.select().from(issues).where(eq(issues.reportId, id));
+		if (row === undefined) throw new Error('no issue');
+		const signal = new AbortController().signal;
+		const { pdf } = await reportIssuing.sign(row, await reportIssuing.render(row, db, signal), db);
+		expect(await verifyReport(pdf, { rootPem: await rootPem(db) })).toMatchObject({
+			verdict: 'genuine',
+			record: { recomputed: true }
+		});
+		// A figure that the record does not compute to, as an outdated run would bring.
+		const model = structuredClone(row.model) as ReportModel;
+		const index = model.runs[0]?.result.outputs.solarReflectanceIndex;
+		if (index === undefined) throw new Error('no index');
+		index.value += 1;
+		const wrong = { ...row, model };
+		await expect(
+			reportIssuing.sign(wrong, await reportIssuing.render(wrong, db, signal), db)
+		).rejects.toThrow(/would not verify \(record-differs\)/);
+	});
+
+	it('is refused for a run of another version of the computing code', async () => {
+		const id = await make();
+		await db.update(runs).set({ engineVersion: '0.9.0' }).where(eq(runs.id, runId));
+		await expect(issueReport(author, id, db)).rejects.toMatchObject({
+			fields: { [`run:${runId}`]: expect.stringContaining('0.9.0') as string }
+		});
+		await db.update(runs).set({ engineVersion }).where(eq(runs.id, runId));
+	});
+
+	it('does not take in a result of a deleted calculation', async () => {
+		const other = await computedTile(author, dossierId);
+		const { calculationId } = await getRun(author, other, db);
+		await deleteCalculation(author, calculationId, db);
+		const id = await make();
+		await expect(change(id, {}, { runIds: [runId, other] })).rejects.toMatchObject({
+			fields: { runs: expect.stringContaining('deleted') as string }
+		});
 	});
 
 	it('that failed is tried again with the same code', async () => {
