@@ -15,6 +15,8 @@ export default defineConfig({
 	retries: 0,
 	forbidOnly: true,
 	timeout: 180_000,
+	// Before the whole stage is ended, so that what ran is counted.
+	globalTimeout: 14 * 60_000,
 	expect: { timeout: 15_000 },
 	use: {
 		baseURL: address,
