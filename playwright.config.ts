@@ -16,7 +16,7 @@ export default defineConfig({
 	forbidOnly: true,
 	timeout: 180_000,
 	// Before the whole stage is ended, so that what ran is counted.
-	globalTimeout: 14 * 60_000,
+	globalTimeout: 40 * 60_000,
 	expect: { timeout: 15_000 },
 	use: {
 		baseURL: address,
