@@ -34,6 +34,8 @@ function spreadWords(assumption: AssumptionDraft): string {
 	return `${spread.label}${parameters === '' ? '' : `: ${parameters}`}`;
 }
 
+const asLabel = (name: string): string => name.charAt(0).toUpperCase() + name.slice(1);
+
 function sourceWords(
 	method: Method,
 	assumption: AssumptionDraft,
@@ -64,7 +66,7 @@ function assumptionRow(
 	href: string,
 	evidence: readonly { id: string; fileName: string }[]
 ): CheckRow {
-	const label = input.name.charAt(0).toUpperCase() + input.name.slice(1);
+	const label = asLabel(input.name);
 	if (assumption === undefined || assumption.value.trim() === '') {
 		return { label, value: input.optional === true ? 'not given (optional)' : 'not given', href };
 	}
@@ -97,7 +99,7 @@ export function checkRows(
 		const value = draft.options[option.id] ?? String(option.default);
 		const choice = option.choices?.find((known) => known.value === value);
 		rows.push({
-			label: option.name,
+			label: asLabel(option.name),
 			value: choice?.label ?? value,
 			href: `${base}/inputs/${option.group}#opt.${option.id}`
 		});
