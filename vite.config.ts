@@ -19,7 +19,8 @@ export default defineConfig({
 						'src/**/*.test.ts',
 						'report-templates/**/*.test.ts',
 						'tests/published/**/*.test.ts',
-						'tests/docs/**/*.test.ts'
+						'tests/docs/**/*.test.ts',
+						'stripe-fake/**/*.test.ts'
 					],
 					exclude: ['src/**/*.db.test.ts', 'src/**/*.svelte.test.ts']
 				}

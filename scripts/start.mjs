@@ -59,6 +59,9 @@ function announce(service) {
 			'',
 			...(signIns.length > 0 ? ['Sign in as', ...signIns, ''] : []),
 			`Mail that it sends can be read at ${service.mailReader}`,
+			...(service.payments === undefined
+				? []
+				: [`Payments go to a local stand-in that takes no money: ${service.payments}/`]),
 			'Ctrl-C stops it.',
 			''
 		].join('\n')
@@ -84,7 +87,8 @@ async function main() {
 	const ports = {
 		web: web.port,
 		smtp: await portFor('SMTP_PORT', process.env.SMTP_PORT),
-		mail: await portFor('MAIL_READER_PORT', process.env.MAIL_READER_PORT)
+		mail: await portFor('MAIL_READER_PORT', process.env.MAIL_READER_PORT),
+		stripe: await portFor('STRIPE_PORT', process.env.STRIPE_PORT)
 	};
 	const secrets = keptSecrets();
 	let databaseUrl = givenDatabase ?? '';

@@ -10,6 +10,8 @@ import { dataFolder } from './paths.mjs';
  * @property {string} databasePassword
  * @property {string} databaseKeeperPassword of the cluster's superuser, which the service itself never uses
  * @property {string} demoPassword of the demo's people
+ * @property {string} STRIPE_SECRET_KEY of the local stand-in for payments
+ * @property {string} STRIPE_WEBHOOK_SECRET
  */
 
 const words = (
@@ -30,7 +32,9 @@ export function makeSecrets() {
 		SEALING_KEYS: `k1:${randomBytes(32).toString('base64')}`,
 		databasePassword: randomBytes(24).toString('base64url'),
 		databaseKeeperPassword: randomBytes(24).toString('base64url'),
-		demoPassword: passphrase()
+		demoPassword: passphrase(),
+		STRIPE_SECRET_KEY: `sk_test_${randomBytes(24).toString('hex')}`,
+		STRIPE_WEBHOOK_SECRET: `whsec_${randomBytes(24).toString('hex')}`
 	};
 }
 

@@ -13,7 +13,7 @@ import { startService } from './service.mjs';
 /** The environment without the caller's settings for a service of their own. @returns {NodeJS.ProcessEnv} */
 export function cleanEnvironment() {
 	const own =
-		/^(DATABASE_URL|PORT|HOST|ORIGIN|AUTH_SECRET|SEALING_KEYS|SMTP_URL|MAIL_.*|NOONMARK_.*|NODE_ENV)$/;
+		/^(DATABASE_URL|PORT|HOST|ORIGIN|AUTH_SECRET|SEALING_KEYS|SMTP_URL|MAIL_.*|STRIPE_.*|NOONMARK_.*|NODE_ENV)$/;
 	return Object.fromEntries(Object.entries(process.env).filter(([name]) => !own.test(name)));
 }
 
@@ -41,7 +41,7 @@ export async function startDatabase(onStop) {
  * @param {(line: string) => void} options.say
  * @param {OnStop} options.onStop
  * @param {(reason: string) => void} options.onCrash a part ended by itself
- * @returns {Promise<Record<'E2E_ADDRESS' | 'E2E_MAIL_READER' | 'E2E_SIGN_INS' | 'E2E_WORKER_PROCESS', string>>}
+ * @returns {Promise<Record<'E2E_ADDRESS' | 'E2E_MAIL_READER' | 'E2E_STRIPE' | 'E2E_SIGN_INS' | 'E2E_WORKER_PROCESS', string>>}
  */
 export async function startForBrowser({ databaseUrl, say, onStop, onCrash }) {
 	const folder = ensureFolder(join(dataFolder, `test-${process.pid}`));
@@ -49,7 +49,12 @@ export async function startForBrowser({ databaseUrl, say, onStop, onCrash }) {
 	const service = await startService({
 		databaseUrl,
 		secrets: makeSecrets(),
-		ports: { web: await freePort(), smtp: await freePort(), mail: await freePort() },
+		ports: {
+			web: await freePort(),
+			smtp: await freePort(),
+			mail: await freePort(),
+			stripe: await freePort()
+		},
 		inherited: cleanEnvironment(),
 		folder,
 		say,
@@ -59,6 +64,7 @@ export async function startForBrowser({ databaseUrl, say, onStop, onCrash }) {
 	return {
 		E2E_ADDRESS: service.address,
 		E2E_MAIL_READER: service.mailReader,
+		E2E_STRIPE: service.payments ?? '',
 		E2E_SIGN_INS: JSON.stringify(service.signIns),
 		E2E_WORKER_PROCESS: String(service.workerProcessId)
 	};
