@@ -12,6 +12,14 @@ const schema = z.object({
 	SEALING_KEYS: z.string().min(1),
 	SMTP_URL: z.url({ protocol: /^smtps?$/ }),
 	MAIL_FROM: z.string().default('Noonmark <post@noonmark.example>'),
+	/** Secret key of the payment service; test and live keys are told apart by it. */
+	STRIPE_SECRET_KEY: z.string().regex(/^[rs]k_(test|live)_\w+$/),
+	/** Signing secrets of the webhook, newest first, separated by commas while one is being replaced. */
+	STRIPE_WEBHOOK_SECRET: z.string().regex(/^whsec_\w+(,whsec_\w+)*$/),
+	/** Where the payment service's API answers, if not at its own address. */
+	STRIPE_API_URL: z.url({ protocol: /^https?$/ }).optional(),
+	/** Origins of its pages for payment and for customers, separated by spaces: forms may lead there. */
+	STRIPE_PAGES: z.string().default('https://checkout.stripe.com https://billing.stripe.com'),
 	LOG_LEVEL: z.enum(['fatal', 'error', 'warn', 'info', 'debug', 'silent']).default('info'),
 	/** `development` shows the local mail reader and the demo's sign-ins. */
 	NOONMARK_MODE: z.enum(['production', 'development']).default('production'),

@@ -4,24 +4,27 @@ import { actions, can, requireAction, type Action } from './can';
 import { ForbiddenError, NotFoundError } from './errors';
 import type { Membership, Role } from './membership';
 
-const roles: readonly Role[] = ['owner', 'billing', 'author', 'reviewer', 'reader'];
+const roles: readonly Role[] = ['owner', 'billing', 'author', 'reviewer', 'reader', 'guest'];
 
 function member(held: readonly Role[]): Membership {
-	return { organisationId: 'o', organisationName: 'O', userId: 'u', roles: held };
+	return { organisationId: 'o', organisationName: 'O', userId: 'u', roles: held, onlyDossiers: null };
 }
 
 /* Written out a second time on purpose, by action: a slip in the table by role shows against it. */
 const allowed: Readonly<Record<Action, readonly Role[]>> = {
-	'dossier.read': ['owner', 'author', 'reviewer', 'reader'],
+	'dossier.read': ['owner', 'author', 'reviewer', 'reader', 'guest'],
 	'dossier.write': ['author'],
-	'calculation.read': ['owner', 'author', 'reviewer', 'reader'],
+	'guests.manage': ['owner', 'author'],
+	'calculation.read': ['owner', 'author', 'reviewer', 'reader', 'guest'],
 	'calculation.write': ['author'],
 	'evidence.write': ['author'],
-	'report.read': ['owner', 'author', 'reviewer', 'reader'],
+	'report.read': ['owner', 'author', 'reviewer', 'reader', 'guest'],
 	'report.write': ['author'],
-	'report.review': ['reviewer'],
+	'report.comment': ['author', 'reviewer', 'guest'],
+	'report.review': ['reviewer', 'guest'],
 	'report.issue': ['author'],
-	'organisation.read': roles,
+	'report.share': ['owner', 'author'],
+	'organisation.read': ['owner', 'billing', 'author', 'reviewer', 'reader'],
 	'organisation.manage': ['owner'],
 	'members.read': ['owner', 'author', 'reviewer', 'reader'],
 	'members.manage': ['owner'],
@@ -73,7 +76,7 @@ describe('requireAction', () => {
 
 function seeing(action: Action): Action {
 	const thing = action.split('.')[0];
-	if (thing === 'evidence') return 'dossier.read';
+	if (thing === 'evidence' || thing === 'guests') return 'dossier.read';
 	if (thing === 'billing' || thing === 'audit') return 'organisation.read';
 	return actions.find((one) => one === `${thing}.read`) ?? 'organisation.read';
 }

@@ -5,13 +5,17 @@ import type { Membership, Role } from './membership';
 export const actions = [
 	'dossier.read',
 	'dossier.write',
+	'guests.manage',
 	'calculation.read',
 	'calculation.write',
 	'evidence.write',
 	'report.read',
 	'report.write',
+	/** Remark on lines and answer remarks. */
+	'report.comment',
 	'report.review',
 	'report.issue',
+	'report.share',
 	'organisation.read',
 	'organisation.manage',
 	'members.read',
@@ -31,18 +35,31 @@ const reading: readonly Action[] = [
 ];
 
 const granted: Readonly<Record<Role, readonly Action[]>> = {
-	owner: [...reading, 'organisation.manage', 'members.manage', 'billing.manage', 'audit.read'],
+	owner: [
+		...reading,
+		'guests.manage',
+		'report.share',
+		'organisation.manage',
+		'members.manage',
+		'billing.manage',
+		'audit.read'
+	],
 	billing: ['organisation.read', 'billing.manage'],
 	author: [
 		...reading,
 		'dossier.write',
+		'guests.manage',
 		'calculation.write',
 		'evidence.write',
 		'report.write',
-		'report.issue'
+		'report.comment',
+		'report.issue',
+		'report.share'
 	],
-	reviewer: [...reading, 'report.review'],
-	reader: reading
+	reviewer: [...reading, 'report.comment', 'report.review'],
+	reader: reading,
+	// Within the dossiers that they were invited to, and nothing of the organisation itself.
+	guest: ['dossier.read', 'calculation.read', 'report.read', 'report.comment', 'report.review']
 };
 
 /** @returns whether any of the member's roles grants the action; false without a membership. */
@@ -61,6 +78,7 @@ export function requireAction(
 	if (can(membership, action)) return;
 	const read: Partial<Record<string, Action>> = {
 		dossier: 'dossier.read',
+		guests: 'dossier.read',
 		evidence: 'dossier.read',
 		calculation: 'calculation.read',
 		report: 'report.read',

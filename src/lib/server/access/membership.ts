@@ -1,4 +1,8 @@
-export type Role = 'owner' | 'billing' | 'author' | 'reviewer' | 'reader';
+/** `guest` is no role of a member: it is what somebody has who was invited to one dossier. */
+export type Role = 'owner' | 'billing' | 'author' | 'reviewer' | 'reader' | 'guest';
+
+/** Roles that a member can hold. */
+export type MemberRole = Exclude<Role, 'guest'>;
 
 /** The organisation that a person acts in, with their roles there. Every query is scoped by `organisationId`. */
 export interface Membership {
@@ -6,4 +10,6 @@ export interface Membership {
 	organisationName: string;
 	userId: string;
 	roles: readonly Role[];
+	/** Null for a member: every dossier. A guest reaches these alone: see `inReach`. */
+	onlyDossiers: readonly string[] | null;
 }

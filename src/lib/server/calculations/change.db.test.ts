@@ -2,7 +2,7 @@ import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { chooseMethod } from '$lib/calculation/new-draft';
 import { methodById } from '$lib/methods';
 import { ConflictError, ForbiddenError, InvalidInputError, NotFoundError } from '../access/errors';
-import type { Membership, Role } from '../access/membership';
+import type { Membership, MemberRole } from '../access/membership';
 import type { Database } from '../db';
 import { dossiers, memberships, organisations, users } from '../db/schema';
 import { testDatabase } from '../testing/db';
@@ -23,7 +23,7 @@ let reader: Membership;
 let stranger: Membership;
 let dossierId: string;
 
-async function member(organisation: string, roles: Role[]): Promise<Membership> {
+async function member(organisation: string, roles: MemberRole[]): Promise<Membership> {
 	const [org] = await db
 		.insert(organisations)
 		.values({ name: organisation, numberPrefix: 'XX' })
@@ -34,7 +34,13 @@ async function member(organisation: string, roles: Role[]): Promise<Membership> 
 		.returning({ id: users.id });
 	if (org === undefined || user === undefined) throw new Error('not stored');
 	await db.insert(memberships).values({ organisationId: org.id, userId: user.id, roles });
-	return { organisationId: org.id, organisationName: organisation, userId: user.id, roles };
+	return {
+		organisationId: org.id,
+		organisationName: organisation,
+		userId: user.id,
+		roles,
+		onlyDossiers: null
+	};
 }
 
 beforeAll(async () => {

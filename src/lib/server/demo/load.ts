@@ -1,5 +1,5 @@
 import { eq } from 'drizzle-orm';
-import type { Membership, Role } from '../access/membership';
+import type { Membership, MemberRole } from '../access/membership';
 import { hashPassword } from '../accounts/passwords';
 import { createConfirmedAccount, findAccountByEmail, storePassword } from '../accounts/people';
 import type { Person } from '../accounts/person';
@@ -16,7 +16,7 @@ const demoMark = 'noonmark-demo';
 interface DemoPerson {
 	name: string;
 	email: string;
-	roles: readonly Role[];
+	roles: readonly MemberRole[];
 }
 
 interface DemoOrganisation {
@@ -73,7 +73,7 @@ export interface DemoSignIn {
 	email: string;
 	password: string;
 	organisation: string;
-	roles: readonly Role[];
+	roles: readonly MemberRole[];
 }
 
 export interface LoadedDemo {

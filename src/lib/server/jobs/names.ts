@@ -11,6 +11,12 @@ export interface JobPayloads {
 	'render-preview': { previewId: string };
 	/** Remove what was deleted more than thirty days ago and what has run out. */
 	'purge-deleted': Record<string, never>;
+	/** Send one mail that followed from a change. */
+	'send-notice': { noticeId: string };
+	/** Bring our copy up to an event of the payment service. */
+	'billing-event': { eventId: string };
+	/** Compare our copy with the payment service and mend it; daily. */
+	'billing-reconcile': Record<string, never>;
 }
 
 export type JobName = keyof JobPayloads;
@@ -29,7 +35,11 @@ export const jobPolicies: Readonly<Record<JobName, JobPolicy>> = {
 	'compute-run': { retryLimit: 3, retryDelay: 2, limitSeconds: 900 },
 	'issue-report': { retryLimit: 5, retryDelay: 2, limitSeconds: 300 },
 	'render-preview': { retryLimit: 1, retryDelay: 1, limitSeconds: 120 },
-	'purge-deleted': { retryLimit: 2, retryDelay: 60, limitSeconds: 300 }
+	'purge-deleted': { retryLimit: 2, retryDelay: 60, limitSeconds: 300 },
+	// A mail server may be away for hours: about twelve of them.
+	'send-notice': { retryLimit: 10, retryDelay: 10, limitSeconds: 60 },
+	'billing-event': { retryLimit: 10, retryDelay: 5, limitSeconds: 60 },
+	'billing-reconcile': { retryLimit: 2, retryDelay: 60, limitSeconds: 600 }
 };
 
 export const jobNames = Object.keys(jobPolicies) as JobName[];

@@ -2,7 +2,7 @@ import { computeRunJob, type ComputeBeside } from './handlers/compute-run';
 import { issueReportJob, type ReportIssuing } from './handlers/issue-report';
 import { purgeDeletedJob } from './handlers/purge-deleted';
 import { renderPreviewJob, type PreviewRendering } from './handlers/render-preview';
-import type { JobDefinitions } from './job';
+import type { JobDefinition, JobDefinitions } from './job';
 
 /** What the jobs need from the process that runs them. */
 export interface JobParts {
@@ -11,12 +11,21 @@ export interface JobParts {
 	preview: PreviewRendering;
 }
 
+/** Nothing asks for these yet. */
+const unasked = {
+	handle: () => Promise.reject(new Error('There is no such job yet.')),
+	abandon: () => Promise.resolve()
+} satisfies JobDefinition;
+
 /** The definition of every job. */
 export function jobDefinitions({ compute, issuing, preview }: JobParts): JobDefinitions {
 	return {
 		'compute-run': computeRunJob(compute),
 		'issue-report': issueReportJob(issuing),
 		'render-preview': renderPreviewJob(preview),
-		'purge-deleted': purgeDeletedJob
+		'purge-deleted': purgeDeletedJob,
+		'send-notice': unasked,
+		'billing-event': unasked,
+		'billing-reconcile': unasked
 	};
 }

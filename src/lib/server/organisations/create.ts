@@ -2,13 +2,13 @@ import type { z } from 'zod';
 import type { newOrganisationSchema } from '../../schemas/organisations';
 import { recordAudit } from '../access/audit';
 import { limit } from '../access/limit';
-import type { Membership, Role } from '../access/membership';
+import type { Membership, MemberRole } from '../access/membership';
 import type { Person } from '../accounts/person';
 import { database, type Database } from '../db';
 import { memberships, organisations } from '../db/schema';
 
 /** What whoever founds an organisation may do in it: everything. */
-export const founderRoles: readonly Role[] = ['owner', 'author', 'reviewer', 'billing'];
+export const founderRoles: readonly MemberRole[] = ['owner', 'author', 'reviewer', 'billing'];
 
 /** @throws TooManyRequestsError after ten new organisations in a day */
 export async function createOrganisation(
@@ -27,7 +27,8 @@ export async function createOrganisation(
 			organisationId: row.id,
 			organisationName: input.name,
 			userId: person.id,
-			roles: founderRoles
+			roles: founderRoles,
+			onlyDossiers: null
 		};
 		await tx
 			.insert(memberships)

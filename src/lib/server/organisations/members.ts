@@ -3,7 +3,7 @@ import { recordAudit } from '../access/audit';
 import { requireAction } from '../access/can';
 import { ConflictError, InvalidInputError, NotFoundError } from '../access/errors';
 import { limit } from '../access/limit';
-import type { Membership, Role } from '../access/membership';
+import type { Membership, MemberRole } from '../access/membership';
 import { findAccountByEmail } from '../accounts/people';
 import { database, type Database, type Queryable, type Transaction } from '../db';
 import { memberships, organisations, users } from '../db/schema';
@@ -12,7 +12,7 @@ export interface Member {
 	userId: string;
 	name: string;
 	email: string;
-	roles: Role[];
+	roles: MemberRole[];
 	since: Date;
 }
 
@@ -43,7 +43,7 @@ export async function listMembers(
  */
 export async function addMember(
 	membership: Membership | null,
-	input: { email: string; roles: readonly Role[] },
+	input: { email: string; roles: readonly MemberRole[] },
 	db: Database = database()
 ): Promise<void> {
 	requireAction(membership, 'members.manage');
@@ -77,7 +77,7 @@ export async function addMember(
 export async function changeRoles(
 	membership: Membership | null,
 	userId: string,
-	roles: readonly Role[],
+	roles: readonly MemberRole[],
 	db: Database = database()
 ): Promise<void> {
 	requireAction(membership, 'members.manage');
@@ -121,7 +121,7 @@ function member(organisationId: string, userId: string) {
 	return and(eq(memberships.organisationId, organisationId), eq(memberships.userId, userId));
 }
 
-function requireRoles(roles: readonly Role[]): void {
+function requireRoles(roles: readonly MemberRole[]): void {
 	if (roles.length > 0) return;
 	const message = 'Choose at least one role.';
 	throw new InvalidInputError(message, { roles: message });

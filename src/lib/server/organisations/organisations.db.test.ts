@@ -7,7 +7,7 @@ import {
 	NotFoundError,
 	TooManyRequestsError
 } from '../access/errors';
-import type { Membership, Role } from '../access/membership';
+import type { Membership, MemberRole } from '../access/membership';
 import type { Database } from '../db';
 import { auditEvents, memberships, organisations, users } from '../db/schema';
 import { testDatabase } from '../testing/db';
@@ -38,7 +38,7 @@ async function owned() {
 	return { owner, membership: await testOrganisation(db, owner) };
 }
 
-async function withMember(roles: readonly Role[]) {
+async function withMember(roles: readonly MemberRole[]) {
 	const { owner, membership } = await owned();
 	const person = await testPerson(db, 'Member');
 	await addMember(membership, { email: person.email, roles }, db);
@@ -135,7 +135,7 @@ describe('members', () => {
 
 	it('need a confirmed account, are added once and with a role', async () => {
 		const { membership, person } = await withMember(['reader']);
-		const add = (email: string, roles: readonly Role[] = ['reader']) =>
+		const add = (email: string, roles: readonly MemberRole[] = ['reader']) =>
 			addMember(membership, { email, roles }, db);
 		await expect(add('nobody@test.example')).rejects.toThrow(InvalidInputError);
 		await expect(add(person.email)).rejects.toThrow(ConflictError);

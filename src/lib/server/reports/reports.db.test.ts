@@ -40,7 +40,7 @@ async function founder(name: string, prefix: string): Promise<Membership> {
 		.values({ name: `Author of ${name}`, email: `a@${prefix.toLowerCase()}.example` })
 		.returning({ id: users.id });
 	if (org === undefined || user === undefined) throw new Error('not stored');
-	return { organisationId: org.id, organisationName: name, userId: user.id, roles: ['owner', 'author'] };
+	return { organisationId: org.id, organisationName: name, userId: user.id, roles: ['owner', 'author'], onlyDossiers: null };
 }
 
 async function computedTile(membership: Membership, dossier: string): Promise<string> {

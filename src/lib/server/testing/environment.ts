@@ -9,6 +9,9 @@ export function setTestEnvironment(given: Record<string, string> = {}): void {
 		AUTH_SECRET: 'a secret of more than 32 characters',
 		SEALING_KEYS: `k1:${Buffer.alloc(32).toString('base64')}`,
 		SMTP_URL: 'smtp://127.0.0.1:1',
+		STRIPE_SECRET_KEY: 'sk_test_tests',
+		STRIPE_WEBHOOK_SECRET: 'whsec_tests',
+		STRIPE_API_URL: 'http://127.0.0.1:1',
 		...given
 	});
 }

@@ -1,4 +1,4 @@
-import type { Membership, Role } from '../access/membership';
+import type { Membership, MemberRole } from '../access/membership';
 import type { Person } from '../accounts/person';
 import { createConfirmedAccount } from '../accounts/people';
 import type { Database } from '../db';
@@ -19,7 +19,7 @@ export async function testPerson(db: Database, name = 'Rhea Aldous'): Promise<Pe
 export async function testOrganisation(
 	db: Database,
 	person: Person,
-	roles: readonly Role[] = ['owner', 'author', 'reviewer', 'billing'],
+	roles: readonly MemberRole[] = ['owner', 'author', 'reviewer', 'billing'],
 	name = 'Tallis Brook Consulting'
 ): Promise<Membership> {
 	const [row] = await db
@@ -28,5 +28,5 @@ export async function testOrganisation(
 		.returning({ id: organisations.id });
 	if (row === undefined) throw new Error('The organisation was not created.');
 	await db.insert(memberships).values({ organisationId: row.id, userId: person.id, roles: [...roles] });
-	return { organisationId: row.id, organisationName: name, userId: person.id, roles };
+	return { organisationId: row.id, organisationName: name, userId: person.id, roles, onlyDossiers: null };
 }

@@ -38,6 +38,8 @@ export const reports = pgTable(
 		state: text('state', { enum: reportStates }).notNull().default('draft'),
 		version: integer('version').notNull().default(1),
 		createdBy: uuid('created_by').references(() => users.id, { onDelete: 'set null' }),
+		/** Everybody who saved it: none of them can be its independent reviewer. */
+		writers: uuid('writers').array().notNull().default([]),
 		createdAt: instant('created_at').notNull().defaultNow(),
 		updatedAt: instant('updated_at').notNull().defaultNow(),
 		deletedAt: instant('deleted_at')
@@ -67,6 +69,8 @@ export const issues = pgTable(
 		/** Raised each time a worker takes the job; a worker may finish only the attempt that it took (fencing). */
 		attempt: integer('attempt').notNull().default(0),
 		problem: text('problem'),
+		/** What the requester can do about a failure: `no-exports` is mended by paying, anything else by trying again. */
+		problemKind: text('problem_kind', { enum: ['no-exports', 'fault'] }),
 		/** Short code printed on page one, such as 8KQ2-7MTR. */
 		code: text('code').notNull(),
 		/** What was rendered, frozen when the issue was asked for. */
