@@ -9,6 +9,7 @@ import { recordAudit } from '../access/audit';
 import { requireAction } from '../access/can';
 import { ConflictError, InvalidInputError, NotFoundError } from '../access/errors';
 import type { Membership } from '../access/membership';
+import { inReach } from '../access/reach';
 import { database, type Database, type Queryable } from '../db';
 import { calculations, calculationVersions, evidence } from '../db/schema';
 import { findDossier } from '../dossiers/find';
@@ -84,7 +85,8 @@ async function checkEvidence(
 				and(
 					eq(evidence.id, id),
 					eq(evidence.dossierId, dossierId),
-					eq(evidence.organisationId, membership.organisationId)
+					eq(evidence.organisationId, membership.organisationId),
+					inReach(membership, evidence.dossierId)
 				)
 			);
 		if (row === undefined) throw new NotFoundError('evidence file');
@@ -228,6 +230,7 @@ export async function restoreCalculation(
 			and(
 				eq(calculations.id, id),
 				eq(calculations.organisationId, membership.organisationId),
+				inReach(membership, calculations.dossierId),
 				isNotNull(calculations.deletedAt)
 			)
 		)
@@ -250,6 +253,7 @@ export async function deletedCalculationTitle(
 			and(
 				eq(calculations.id, id),
 				eq(calculations.organisationId, membership.organisationId),
+				inReach(membership, calculations.dossierId),
 				isNotNull(calculations.deletedAt)
 			)
 		);

@@ -6,6 +6,7 @@ import { methods } from '$lib/methods';
 import type { RunOutcome } from '$lib/wording/answer-in-brief';
 import { requireAction } from '../access/can';
 import type { Membership } from '../access/membership';
+import { inReach } from '../access/reach';
 import { database, type Queryable } from '../db';
 import { calculations, dossiers, runs } from '../db/schema';
 import { matching, ordered, paged } from '../lists/search';
@@ -59,6 +60,7 @@ export async function listCalculations(
 	requireAction(membership, 'calculation.read');
 	const own = and(
 		eq(calculations.organisationId, membership.organisationId),
+		inReach(membership, calculations.dossierId),
 		isNull(calculations.deletedAt),
 		isNull(dossiers.deletedAt),
 		dossierId === undefined ? undefined : eq(calculations.dossierId, dossierId)

@@ -3,6 +3,7 @@ import type { CalculationDraft } from '$lib/calculation/draft';
 import { requireAction } from '../access/can';
 import { NotFoundError } from '../access/errors';
 import type { Membership } from '../access/membership';
+import { inReach } from '../access/reach';
 import { database, type Queryable } from '../db';
 import { calculations, calculationVersions, dossiers, users } from '../db/schema';
 
@@ -42,6 +43,7 @@ export async function getCalculation(
 			and(
 				eq(calculations.id, id),
 				eq(calculations.organisationId, membership.organisationId),
+				inReach(membership, calculations.dossierId),
 				isNull(calculations.deletedAt),
 				isNull(dossiers.deletedAt)
 			)

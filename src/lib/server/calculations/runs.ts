@@ -11,8 +11,9 @@ import { requireAction } from '../access/can';
 import { InvalidInputError, NotFoundError } from '../access/errors';
 import { limit } from '../access/limit';
 import type { Membership } from '../access/membership';
+import { inReach } from '../access/reach';
 import { database, type Database, type Queryable } from '../db';
-import { runs } from '../db/schema';
+import { calculations, runs } from '../db/schema';
 import { enqueue } from '../jobs/queue';
 import { finishedRun } from './finish-run';
 import { getCalculation } from './load';
@@ -121,7 +122,14 @@ async function sameRun(
 			same: sql<boolean>`${runs.draft} - 'visited' = ${JSON.stringify(draft)}::jsonb - 'visited'`
 		})
 		.from(runs)
-		.where(and(eq(runs.calculationId, calculationId), eq(runs.organisationId, membership.organisationId)))
+		.innerJoin(calculations, eq(calculations.id, runs.calculationId))
+		.where(
+			and(
+				eq(runs.calculationId, calculationId),
+				eq(runs.organisationId, membership.organisationId),
+				inReach(membership, calculations.dossierId)
+			)
+		)
 		.orderBy(desc(runs.createdAt))
 		.limit(1);
 	if (latest?.same !== true || latest.state === 'failed') return undefined;
@@ -139,7 +147,14 @@ export async function latestRun(
 	const [row] = await db
 		.select(columns)
 		.from(runs)
-		.where(and(eq(runs.calculationId, calculationId), eq(runs.organisationId, membership.organisationId)))
+		.innerJoin(calculations, eq(calculations.id, runs.calculationId))
+		.where(
+			and(
+				eq(runs.calculationId, calculationId),
+				eq(runs.organisationId, membership.organisationId),
+				inReach(membership, calculations.dossierId)
+			)
+		)
 		.orderBy(desc(runs.createdAt))
 		.limit(1);
 	return row ?? null;
@@ -155,7 +170,14 @@ export async function getRun(
 	const [row] = await db
 		.select(columns)
 		.from(runs)
-		.where(and(eq(runs.id, runId), eq(runs.organisationId, membership.organisationId)));
+		.innerJoin(calculations, eq(calculations.id, runs.calculationId))
+		.where(
+			and(
+				eq(runs.id, runId),
+				eq(runs.organisationId, membership.organisationId),
+				inReach(membership, calculations.dossierId)
+			)
+		);
 	if (row === undefined) throw new NotFoundError('run');
 	return row;
 }

@@ -3,6 +3,7 @@ import { recordAudit } from '../access/audit';
 import { requireAction } from '../access/can';
 import { ConflictError, NotFoundError } from '../access/errors';
 import type { Membership } from '../access/membership';
+import { inReach } from '../access/reach';
 import { database, type Database, type Queryable } from '../db';
 import { dossiers, issues, reports } from '../db/schema';
 import { findDossier } from './find';
@@ -16,6 +17,7 @@ function keptReports(db: Queryable, membership: Membership, dossierId: string) {
 		.where(
 			and(
 				eq(reports.organisationId, membership.organisationId),
+				inReach(membership, reports.dossierId),
 				eq(reports.dossierId, dossierId),
 				sql`(${inArray(reports.state, ['issued', 'superseded', 'withdrawn'])} or ${issues.state} <> 'failed')`
 			)
@@ -42,6 +44,7 @@ export async function deleteDossier(
 				and(
 					eq(dossiers.id, id),
 					eq(dossiers.organisationId, membership.organisationId),
+					inReach(membership, dossiers.id),
 					isNull(dossiers.deletedAt),
 					notExists(keptReports(tx, membership, id))
 				)
@@ -71,6 +74,7 @@ export async function restoreDossier(
 				and(
 					eq(dossiers.id, id),
 					eq(dossiers.organisationId, membership.organisationId),
+					inReach(membership, dossiers.id),
 					isNotNull(dossiers.deletedAt)
 				)
 			)
@@ -94,6 +98,7 @@ export async function deletedDossierTitle(
 			and(
 				eq(dossiers.id, id),
 				eq(dossiers.organisationId, membership.organisationId),
+				inReach(membership, dossiers.id),
 				isNotNull(dossiers.deletedAt)
 			)
 		);

@@ -1,6 +1,7 @@
 import { and, eq, isNull } from 'drizzle-orm';
 import { NotFoundError } from '../access/errors';
 import type { Membership } from '../access/membership';
+import { inReach } from '../access/reach';
 import type { Queryable } from '../db';
 import { dossiers } from '../db/schema';
 
@@ -18,6 +19,7 @@ export async function findDossier(db: Queryable, membership: Membership, id: str
 			and(
 				eq(dossiers.id, id),
 				eq(dossiers.organisationId, membership.organisationId),
+				inReach(membership, dossiers.id),
 				isNull(dossiers.deletedAt)
 			)
 		);

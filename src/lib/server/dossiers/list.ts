@@ -3,6 +3,7 @@ import type { Listed, ListQuery } from '$lib/lists/query';
 import type { DossierColumn } from '$lib/lists/shapes';
 import { requireAction } from '../access/can';
 import type { Membership } from '../access/membership';
+import { inReach } from '../access/reach';
 import { database, type Queryable } from '../db';
 import { calculations, dossiers, reports } from '../db/schema';
 import { matching, ordered, paged } from '../lists/search';
@@ -31,7 +32,11 @@ export async function listDossiers(
 	db: Queryable = database()
 ): Promise<Listed<DossierRow>> {
 	requireAction(membership, 'dossier.read');
-	const own = and(eq(dossiers.organisationId, membership.organisationId), isNull(dossiers.deletedAt));
+	const own = and(
+		eq(dossiers.organisationId, membership.organisationId),
+		inReach(membership, dossiers.id),
+		isNull(dossiers.deletedAt)
+	);
 	const found = matching(query.q, [
 		dossiers.title,
 		dossiers.client,

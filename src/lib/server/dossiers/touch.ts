@@ -1,5 +1,6 @@
 import { and, eq, sql } from 'drizzle-orm';
 import type { Membership } from '../access/membership';
+import { inReach } from '../access/reach';
 import type { Queryable } from '../db';
 import { dossiers } from '../db/schema';
 
@@ -8,5 +9,11 @@ export async function touchDossier(db: Queryable, membership: Membership, id: st
 	await db
 		.update(dossiers)
 		.set({ updatedAt: sql`now()` })
-		.where(and(eq(dossiers.id, id), eq(dossiers.organisationId, membership.organisationId)));
+		.where(
+			and(
+				eq(dossiers.id, id),
+				eq(dossiers.organisationId, membership.organisationId),
+				inReach(membership, dossiers.id)
+			)
+		);
 }

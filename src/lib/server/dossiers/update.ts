@@ -4,6 +4,7 @@ import { recordAudit } from '../access/audit';
 import { requireAction } from '../access/can';
 import { ConflictError } from '../access/errors';
 import type { Membership } from '../access/membership';
+import { inReach } from '../access/reach';
 import { database, type Database } from '../db';
 import { dossiers } from '../db/schema';
 import { findDossier } from './find';
@@ -31,6 +32,7 @@ export async function updateDossier(
 				and(
 					eq(dossiers.id, id),
 					eq(dossiers.organisationId, membership.organisationId),
+					inReach(membership, dossiers.id),
 					eq(dossiers.version, startedFrom),
 					isNull(dossiers.deletedAt)
 				)

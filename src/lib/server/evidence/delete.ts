@@ -3,6 +3,7 @@ import { recordAudit } from '../access/audit';
 import { requireAction } from '../access/can';
 import { ConflictError, NotFoundError } from '../access/errors';
 import type { Membership } from '../access/membership';
+import { inReach } from '../access/reach';
 import { database, type Database, type Queryable } from '../db';
 import { calculations, evidence, reports, runs } from '../db/schema';
 import { findDossier } from '../dossiers/find';
@@ -17,6 +18,7 @@ async function citedBy(db: Queryable, membership: Membership, dossierId: string,
 		.where(
 			and(
 				eq(calculations.organisationId, membership.organisationId),
+				inReach(membership, calculations.dossierId),
 				eq(calculations.dossierId, dossierId),
 				or(
 					and(isNull(calculations.deletedAt), sql`${calculations.draft}::text like ${containing(id)}`),
@@ -58,6 +60,7 @@ export async function deleteEvidence(
 				and(
 					eq(evidence.id, id),
 					eq(evidence.organisationId, membership.organisationId),
+					inReach(membership, evidence.dossierId),
 					isNull(evidence.deletedAt)
 				)
 			)
@@ -95,6 +98,7 @@ export async function restoreEvidence(
 				and(
 					eq(evidence.id, id),
 					eq(evidence.organisationId, membership.organisationId),
+					inReach(membership, evidence.dossierId),
 					isNotNull(evidence.deletedAt)
 				)
 			)
@@ -121,6 +125,7 @@ export async function deletedEvidenceName(
 			and(
 				eq(evidence.id, id),
 				eq(evidence.organisationId, membership.organisationId),
+				inReach(membership, evidence.dossierId),
 				isNotNull(evidence.deletedAt)
 			)
 		);

@@ -2,6 +2,7 @@ import { and, eq, isNull } from 'drizzle-orm';
 import { requireAction } from '../access/can';
 import { NotFoundError } from '../access/errors';
 import type { Membership } from '../access/membership';
+import { inReach } from '../access/reach';
 import { database, type Queryable } from '../db';
 import { dossiers, evidence } from '../db/schema';
 import { attachment } from './file-name';
@@ -34,6 +35,7 @@ export async function downloadEvidence(
 			and(
 				eq(evidence.id, id),
 				eq(evidence.organisationId, membership.organisationId),
+				inReach(membership, evidence.dossierId),
 				isNull(evidence.deletedAt),
 				isNull(dossiers.deletedAt)
 			)

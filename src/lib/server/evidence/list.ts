@@ -1,6 +1,7 @@
 import { and, desc, eq, isNull } from 'drizzle-orm';
 import { requireAction } from '../access/can';
 import type { Membership } from '../access/membership';
+import { inReach } from '../access/reach';
 import { database, type Queryable } from '../db';
 import { evidence, users } from '../db/schema';
 import type { EvidenceMediaType } from './check-content';
@@ -38,6 +39,7 @@ export async function listEvidence(
 		.where(
 			and(
 				eq(evidence.organisationId, membership.organisationId),
+				inReach(membership, evidence.dossierId),
 				eq(evidence.dossierId, dossierId),
 				isNull(evidence.deletedAt)
 			)

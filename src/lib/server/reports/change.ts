@@ -6,6 +6,7 @@ import { recordAudit } from '../access/audit';
 import { requireAction } from '../access/can';
 import { ConflictError, InvalidInputError, NotFoundError } from '../access/errors';
 import type { Membership } from '../access/membership';
+import { inReach } from '../access/reach';
 import { database, type Database, type Queryable } from '../db';
 import { organisations, reports } from '../db/schema';
 import { findDossier } from '../dossiers/find';
@@ -224,6 +225,7 @@ export async function deletedReportNumber(
 			and(
 				eq(reports.id, id),
 				eq(reports.organisationId, membership.organisationId),
+				inReach(membership, reports.dossierId),
 				isNotNull(reports.deletedAt)
 			)
 		);
@@ -245,6 +247,7 @@ export async function restoreReport(
 				and(
 					eq(reports.id, id),
 					eq(reports.organisationId, membership.organisationId),
+					inReach(membership, reports.dossierId),
 					isNotNull(reports.deletedAt)
 				)
 			)

@@ -6,6 +6,7 @@ import { recordAudit } from '../access/audit';
 import { requireAction } from '../access/can';
 import { ConflictError, ForbiddenError, InvalidInputError, NotFoundError } from '../access/errors';
 import type { Membership } from '../access/membership';
+import { inReach } from '../access/reach';
 import { database, type Database, type Queryable } from '../db';
 import { issues, organisations, reports, users } from '../db/schema';
 import { env } from '../env';
@@ -50,11 +51,13 @@ export async function issueOf(
 	const [row] = await db
 		.select(columns)
 		.from(issues)
+		.innerJoin(reports, eq(reports.id, issues.reportId))
 		.where(
 			and(
 				eq(issues.reportId, report.id),
 				eq(issues.revision, report.revision),
-				eq(issues.organisationId, membership.organisationId)
+				eq(issues.organisationId, membership.organisationId),
+				inReach(membership, reports.dossierId)
 			)
 		)
 		.orderBy(desc(issues.requestedAt))
@@ -203,11 +206,13 @@ export async function issuedFile(
 	const [row] = await db
 		.select({ pdf: issues.pdf })
 		.from(issues)
+		.innerJoin(reports, eq(reports.id, issues.reportId))
 		.where(
 			and(
 				eq(issues.reportId, report.id),
 				eq(issues.revision, report.revision),
 				eq(issues.organisationId, membership.organisationId),
+				inReach(membership, reports.dossierId),
 				eq(issues.state, 'done')
 			)
 		);

@@ -4,6 +4,7 @@ import type { ReportColumn } from '$lib/lists/shapes';
 import type { RunOutcome } from '$lib/wording/answer-in-brief';
 import { requireAction } from '../access/can';
 import type { Membership } from '../access/membership';
+import { inReach } from '../access/reach';
 import { outcomeOfRun } from '../calculations/list';
 import { database, type Queryable } from '../db';
 import { dossiers, reports, runs, users } from '../db/schema';
@@ -47,6 +48,7 @@ export async function listReports(
 	requireAction(membership, 'report.read');
 	const own = and(
 		eq(reports.organisationId, membership.organisationId),
+		inReach(membership, reports.dossierId),
 		isNull(reports.deletedAt),
 		isNull(dossiers.deletedAt),
 		dossierId === undefined ? undefined : eq(reports.dossierId, dossierId)

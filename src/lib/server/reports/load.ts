@@ -3,6 +3,7 @@ import type { ReportText } from '$lib/report/text';
 import { requireAction } from '../access/can';
 import { NotFoundError } from '../access/errors';
 import type { Membership } from '../access/membership';
+import { inReach } from '../access/reach';
 import { database, type Queryable } from '../db';
 import { calculations, dossiers, reports, runs } from '../db/schema';
 
@@ -38,6 +39,7 @@ export async function getReport(
 			and(
 				eq(reports.id, id),
 				eq(reports.organisationId, membership.organisationId),
+				inReach(membership, reports.dossierId),
 				isNull(reports.deletedAt),
 				isNull(dossiers.deletedAt)
 			)
@@ -95,6 +97,7 @@ export async function runChoices(
 			and(
 				eq(calculations.dossierId, dossierId),
 				eq(runs.organisationId, membership.organisationId),
+				inReach(membership, calculations.dossierId),
 				eq(runs.state, 'done')
 			)
 		)
@@ -123,6 +126,7 @@ export async function runsOf(
 			and(
 				inArray(runs.id, [...runIds]),
 				eq(runs.organisationId, membership.organisationId),
+				inReach(membership, calculations.dossierId),
 				eq(calculations.dossierId, dossierId),
 				eq(runs.state, 'done')
 			)

@@ -3,6 +3,7 @@ import { methodById } from '$lib/methods';
 import { buildReportModel, type ReportModel, type ReportSource, type VerificationSource } from '$lib/report';
 import { InvalidInputError } from '../access/errors';
 import type { Membership } from '../access/membership';
+import { inReach } from '../access/reach';
 import type { Queryable } from '../db';
 import { evidence, organisations, users } from '../db/schema';
 import { runsOf, type ReportView } from './load';
@@ -28,7 +29,13 @@ async function evidenceOf(membership: Membership, ids: readonly string[], db: Qu
 			sha256: evidence.sha256
 		})
 		.from(evidence)
-		.where(and(inArray(evidence.id, [...ids]), eq(evidence.organisationId, membership.organisationId)))
+		.where(
+			and(
+				inArray(evidence.id, [...ids]),
+				eq(evidence.organisationId, membership.organisationId),
+				inReach(membership, evidence.dossierId)
+			)
+		)
 		.orderBy(evidence.uploadedAt);
 }
 

@@ -3,8 +3,9 @@ import { requireAction } from '../access/can';
 import { NotFoundError } from '../access/errors';
 import { limit } from '../access/limit';
 import type { Membership } from '../access/membership';
+import { inReach } from '../access/reach';
 import { database, type Database, type Queryable } from '../db';
-import { previews } from '../db/schema';
+import { previews, reports } from '../db/schema';
 import { enqueue } from '../jobs/queue';
 import { getReport } from './load';
 import { modelOf, requirePrintable } from './model';
@@ -78,7 +79,14 @@ export async function getPreview(
 	const [row] = await db
 		.select({ id: previews.id, state: previews.state, problem: previews.problem })
 		.from(previews)
-		.where(and(eq(previews.id, id), eq(previews.organisationId, membership.organisationId)));
+		.innerJoin(reports, eq(reports.id, previews.reportId))
+		.where(
+			and(
+				eq(previews.id, id),
+				eq(previews.organisationId, membership.organisationId),
+				inReach(membership, reports.dossierId)
+			)
+		);
 	if (row === undefined) throw new NotFoundError('preview');
 	return row;
 }
@@ -93,7 +101,14 @@ export async function previewFile(
 	const [row] = await db
 		.select({ pdf: previews.pdf })
 		.from(previews)
-		.where(and(eq(previews.id, id), eq(previews.organisationId, membership.organisationId)));
+		.innerJoin(reports, eq(reports.id, previews.reportId))
+		.where(
+			and(
+				eq(previews.id, id),
+				eq(previews.organisationId, membership.organisationId),
+				inReach(membership, reports.dossierId)
+			)
+		);
 	if (!row?.pdf) throw new NotFoundError('preview');
 	return row.pdf;
 }
