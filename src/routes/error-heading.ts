@@ -3,6 +3,7 @@ const headings: Readonly<Record<number, string>> = {
 	403: 'Your role does not allow this.',
 	404: 'There is nothing here.',
 	409: 'This has changed in the meantime.',
+	410: 'This link no longer works.',
 	413: 'That file is too large.',
 	429: 'Too many tries in a short time.'
 };

@@ -14,6 +14,14 @@ export class ForbiddenError extends Error {
 	}
 }
 
+/** What was there and was taken away on purpose: it may be said that it is gone, and nothing of what it was. */
+export class GoneError extends Error {
+	constructor(message: string) {
+		super(message);
+		this.name = 'GoneError';
+	}
+}
+
 /** Somebody else saved first. */
 export class ConflictError extends Error {
 	constructor(message: string) {

@@ -4,7 +4,13 @@ import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { newDraft } from '$lib/calculation/new-draft';
 import { emptyReportText } from '$lib/report/text';
 import { emptyDossier } from '$lib/schemas/dossier';
-import { ConflictError, ForbiddenError, InvalidInputError, NotFoundError } from '../access/errors';
+import {
+	ConflictError,
+	ForbiddenError,
+	InvalidInputError,
+	NotFoundError,
+	TooManyRequestsError
+} from '../access/errors';
 import type { Membership } from '../access/membership';
 import type { Database } from '../db';
 import { auditEvents, calculations, evidence, reports, runs } from '../db/schema';
@@ -202,5 +208,21 @@ describe('evidence', () => {
 		const refusal = tries.find((one) => one.status === 'rejected');
 		expect(refusal?.reason).toBeInstanceOf(InvalidInputError);
 		expect(String(refusal?.reason)).toMatch(/500 MB/);
+	});
+
+	it('comes in at a pace, refused tries counted, that one person cannot outrun and others do not feel', async () => {
+		const hasty = await member(db, ['author']);
+		const calm = await member(db, ['author'], hasty);
+		const own = await createDossier(hasty, { ...emptyDossier, title: 'Hasty' }, db);
+		const page = { name: 'x.pdf', bytes: Buffer.from('<html>') };
+		// Twice the pace and one more: too many for one window even where the tries fall into two.
+		const tries = await Promise.allSettled(
+			Array.from({ length: 121 }, () => uploadEvidence(hasty, own, page, db))
+		);
+		const reasons = tries.map((one) => (one.status === 'rejected' ? (one.reason as unknown) : null));
+		expect(reasons.some((reason) => reason instanceof InvalidInputError)).toBe(true);
+		expect(reasons.some((reason) => reason instanceof TooManyRequestsError)).toBe(true);
+		const sound = { name: 'y.pdf', bytes: smallPdf('hasty') };
+		expect(await uploadEvidence(calm, own, sound, db)).toMatchObject({ id: expect.any(String) as string });
 	});
 });

@@ -3,6 +3,7 @@ import { and, eq, isNull, sum } from 'drizzle-orm';
 import { recordAudit } from '../access/audit';
 import { requireAction } from '../access/can';
 import { InvalidInputError } from '../access/errors';
+import { limit } from '../access/limit';
 import type { Membership } from '../access/membership';
 import { database, type Database } from '../db';
 import { evidence, organisations } from '../db/schema';
@@ -18,6 +19,10 @@ import { organisationQuota } from './limits';
  * back as a download (./download.ts).
  */
 
+/** A folder of data sheets at a time, but no flood: each file is parsed, hashed and stored. */
+const paceOfPerson = { max: 60, seconds: 600 };
+const paceOfOrganisation = { max: 240, seconds: 600 };
+
 export interface GivenFile {
 	/** As the browser calls it. */
 	name: string;
@@ -31,7 +36,7 @@ function refuse(message: string): never {
 /**
  * Adds a file to a dossier.
  * @returns its id and the SHA-256 of its bytes, in hex.
- * @throws InvalidInputError, with the fault at the field `file`, for a file that is not taken.
+ * @throws InvalidInputError, with the fault at the field `file`, for a file that is not taken; TooManyRequestsError.
  */
 export async function uploadEvidence(
 	membership: Membership | null,
@@ -40,6 +45,13 @@ export async function uploadEvidence(
 	db: Database = database()
 ): Promise<{ id: string; sha256: string }> {
 	requireAction(membership, 'evidence.write');
+	await limit(`evidence:${membership.userId}`, paceOfPerson.max, paceOfPerson.seconds, db);
+	await limit(
+		`evidence-of:${membership.organisationId}`,
+		paceOfOrganisation.max,
+		paceOfOrganisation.seconds,
+		db
+	);
 	await findDossier(db, membership, dossierId);
 	const mediaType = checkContent(file.bytes);
 	const sha256 = createHash('sha256').update(file.bytes).digest('hex');

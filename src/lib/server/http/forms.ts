@@ -3,6 +3,7 @@ import type { z } from 'zod';
 import { InvalidInputError, TooManyRequestsError } from '../access/errors';
 import { MailNotSentError } from '../mail/transport';
 import { statusOf } from './errors';
+import { noteRefusal } from './refusals';
 
 /** What a form gets back when it could not be taken: faults by field (`form` for none), and what was typed. */
 export interface FormFault {
@@ -58,6 +59,7 @@ export async function orFormFault<T>(
 		}
 		const status = statusOf(cause);
 		if (status === undefined || !(cause instanceof Error)) throw cause;
+		noteRefusal(status);
 		if (status === 403 || status === 404) error(status, cause.message);
 		if (cause instanceof TooManyRequestsError) {
 			event.setHeaders({ 'retry-after': String(cause.retryAfter) });
