@@ -1,6 +1,7 @@
 import { isHttpError, isRedirect, type Handle, type RequestEvent } from '@sveltejs/kit';
 import { env } from '../env';
 import { log } from '../log';
+import { addSharedHeaders, isSharedPath } from './shared-pages';
 
 /** For answers that are no pages (pages bring a policy with nonces): nothing may run, load or be framed. */
 const strictPolicy = [
@@ -80,6 +81,7 @@ export const securityHeaders: Handle = async ({ event, resolve }) => {
 	} catch (thrown) {
 		response = answerThrown(thrown, event);
 	}
+	if (isSharedPath(event.url.pathname)) addSharedHeaders(response.headers);
 	addSecurityHeaders(response.headers, new URL(env().ORIGIN).protocol === 'https:');
 	return response;
 };
