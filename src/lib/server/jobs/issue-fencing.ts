@@ -12,13 +12,13 @@ export type Issue = typeof issues.$inferSelect;
 export async function takeIssue(db: Queryable, issueId: string): Promise<Issue | undefined> {
 	const [taken] = await db
 		.update(issues)
-		.set({ attempt: sql`${issues.attempt} + 1`, state: 'rendering', problem: null })
+		.set({ attempt: sql`${issues.attempt} + 1`, state: 'rendering', problem: null, problemKind: null })
 		.where(and(eq(issues.id, issueId), inArray(issues.state, ['queued', 'rendering', 'signing'])))
 		.returning();
 	return taken;
 }
 
-/** What the way to a finished issue writes; `done` only together with the signed bytes. */
+/** What the way to a finished issue writes; `done` only together with the signed bytes and the debit. */
 export type IssueProgress =
 	| { state: 'signing' }
 	| {
@@ -28,7 +28,8 @@ export type IssueProgress =
 			size: number;
 			certificateId: string | null;
 			issuedAt: Date;
-	  };
+	  }
+	| { state: 'failed'; problem: string; problemKind: 'no-exports' };
 
 /**
  * Writes to an issue as the attempt that took it.

@@ -4,6 +4,7 @@ import { recordAudit } from '../access/audit';
 import { limit } from '../access/limit';
 import type { Membership, MemberRole } from '../access/membership';
 import type { Person } from '../accounts/person';
+import { grantTrial } from '../billing/ledger';
 import { database, type Database } from '../db';
 import { memberships, organisations } from '../db/schema';
 
@@ -33,6 +34,7 @@ export async function createOrganisation(
 		await tx
 			.insert(memberships)
 			.values({ organisationId: row.id, userId: person.id, roles: [...founderRoles] });
+		await grantTrial(tx, row.id, person.id);
 		await recordAudit(tx, membership, 'organisation.create', row.id);
 		return membership;
 	});

@@ -7,6 +7,7 @@ import { requireAction } from '../access/can';
 import { ConflictError, ForbiddenError, InvalidInputError, NotFoundError } from '../access/errors';
 import type { Membership } from '../access/membership';
 import { inReach } from '../access/reach';
+import { requireExport } from '../billing/ledger';
 import { database, type Database, type Queryable } from '../db';
 import { issues, organisations, reports, users } from '../db/schema';
 import { env } from '../env';
@@ -109,7 +110,8 @@ async function authoriserOf(membership: Membership, db: Queryable): Promise<{ na
  * Issues a report: freezes what is printed, and queues its rendering and signing. Asked for twice it is one issue;
  * after a failure it is tried again with the same code.
  * @returns the issue's id
- * @throws InvalidInputError while a duty is unmet, ForbiddenError where the organisation wants a second reader.
+ * @throws InvalidInputError while a duty is unmet, ForbiddenError where the organisation wants a second reader,
+ * NoExportsError where no export is left: the report stays as it is.
  */
 export async function issueReport(
 	membership: Membership | null,
@@ -135,6 +137,7 @@ export async function issueReport(
 		if (before === null && locked.state !== 'draft' && locked.state !== 'returned') {
 			throw new ConflictError(`Report ${seen.number} is ${locked.state} and cannot be issued again.`);
 		}
+		await requireExport(tx, membership.organisationId);
 		if (before !== null) return tryAgain(membership, before.id, tx);
 
 		const [policy] = await tx

@@ -1,5 +1,6 @@
 import { eq, sql } from 'drizzle-orm';
 import type { ReportModel } from '../../report';
+import { debitExport } from '../billing/ledger';
 import { auditEvents, reports } from '../db/schema';
 import type { ReportIssuing } from '../jobs/handlers/issue-report';
 import { PermanentJobError } from '../jobs/job';
@@ -76,5 +77,7 @@ export const reportIssuing: ReportIssuing = {
 			subject: issue.reportId,
 			detail: { issue: issue.id }
 		});
+		// Last, because it holds the organisation's row until the transaction ends.
+		await debitExport(tx, issue.organisationId, issue.id);
 	}
 };

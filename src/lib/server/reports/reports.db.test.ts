@@ -7,6 +7,7 @@ import { engineVersion } from '$lib/record';
 import type { ReportModel } from '$lib/report';
 import { ConflictError, ForbiddenError, InvalidInputError, NotFoundError } from '../access/errors';
 import type { Membership } from '../access/membership';
+import { giveExports } from '../billing/testing/exports';
 import { createCalculation, deleteCalculation, saveDraft } from '../calculations/change';
 import { getCalculation } from '../calculations/load';
 import { getRun, latestRun, startRun } from '../calculations/runs';
@@ -40,7 +41,14 @@ async function founder(name: string, prefix: string): Promise<Membership> {
 		.values({ name: `Author of ${name}`, email: `a@${prefix.toLowerCase()}.example` })
 		.returning({ id: users.id });
 	if (org === undefined || user === undefined) throw new Error('not stored');
-	return { organisationId: org.id, organisationName: name, userId: user.id, roles: ['owner', 'author'], onlyDossiers: null };
+	await giveExports(db, org.id, 100);
+	return {
+		organisationId: org.id,
+		organisationName: name,
+		userId: user.id,
+		roles: ['owner', 'author'],
+		onlyDossiers: null
+	};
 }
 
 async function computedTile(membership: Membership, dossier: string): Promise<string> {

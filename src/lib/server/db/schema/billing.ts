@@ -18,7 +18,9 @@ export const billingCustomers = pgTable(
 			.primaryKey()
 			.references(() => organisations.id, { onDelete: 'cascade' }),
 		customerId: text('customer_id').notNull(),
-		createdAt: instant('created_at').notNull().defaultNow()
+		createdAt: instant('created_at').notNull().defaultNow(),
+		/** Removed over there: the next purchase makes another one. */
+		deletedAt: instant('deleted_at')
 	},
 	(t) => [uniqueIndex('billing_customers_customer').on(t.customerId)]
 );
@@ -42,6 +44,8 @@ export const subscriptions = pgTable(
 		/** Seats. */
 		quantity: integer('quantity').notNull(),
 		startedAt: instant('started_at').notNull(),
+		/** What billing periods and months of exports are counted from. */
+		anchor: instant('anchor').notNull(),
 		periodStart: instant('period_start').notNull(),
 		periodEnd: instant('period_end').notNull(),
 		/** End of the last period that a paid invoice of this subscription covers. */
@@ -91,6 +95,8 @@ export const checkouts = pgTable(
 		/** Seats, or packs. */
 		quantity: integer('quantity').notNull(),
 		sessionId: text('session_id'),
+		/** The payment of a pack, by which a refund finds it. */
+		paymentIntentId: text('payment_intent_id'),
 		state: text('state', { enum: ['open', 'complete', 'expired', 'failed'] })
 			.notNull()
 			.default('open'),
@@ -138,7 +144,7 @@ export const exportGrants = pgTable(
 			.notNull()
 			.references(() => organisations.id, { onDelete: 'cascade' }),
 		kind: text('kind', { enum: ['trial', 'month', 'pack'] }).notNull(),
-		/** What makes it happen once: "trial:USER", "month:SUBSCRIPTION:START:SEATS", "pack:SESSION". */
+		/** What makes it happen once: "trial:USER", "month:SUBSCRIPTION:START:TOTAL", "pack:SESSION". */
 		key: text('key').notNull(),
 		amount: integer('amount').notNull(),
 		validFrom: instant('valid_from').notNull().defaultNow(),
@@ -166,8 +172,9 @@ export const exportDebits = pgTable(
 		/** `issue` debits one; `refund` takes back what money was returned for. */
 		kind: text('kind', { enum: ['issue', 'refund'] }).notNull(),
 		issueId: uuid('issue_id').references(() => issues.id),
-		/** "issue:ISSUE", "refund:REFUND". */
+		/** "issue:ISSUE", "refund:CHARGE:NUMBER". */
 		key: text('key').notNull(),
+		/** Negative for a refund that did not go through in the end. */
 		amount: integer('amount').notNull(),
 		at: instant('at').notNull().defaultNow()
 	},

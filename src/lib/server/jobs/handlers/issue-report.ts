@@ -1,5 +1,6 @@
 import { createHash } from 'node:crypto';
 import { and, eq, ne } from 'drizzle-orm';
+import { NoExportsError } from '../../billing/errors';
 import type { Database, Transaction } from '../../db';
 import { issues } from '../../db/schema';
 import { takeIssue, writeIssue, type Issue } from '../issue-fencing';
@@ -19,7 +20,10 @@ export interface ReportIssuing {
 	render(issue: Issue, db: Database, signal: AbortSignal): Promise<Uint8Array>;
 	/** Signs the rendered bytes with the organisation's certificate. */
 	sign(issue: Issue, rendered: Uint8Array, db: Database): Promise<SignedReport>;
-	/** What else must become true together with the kept bytes: the report's state, the audit entry. */
+	/**
+	 * What else must become true together with the kept bytes: the report's state, the audit entry, the export used.
+	 * @throws NoExportsError where none is left: then nothing is kept
+	 */
 	publish(issue: Issue, signed: SignedReport, tx: Transaction): Promise<void>;
 }
 
@@ -36,7 +40,7 @@ export function issueReportJob(issuing: ReportIssuing): JobDefinition<'issue-rep
 			await context.guarded((tx) => writeIssue(tx, issue.id, issue.attempt, { state: 'signing' }));
 			const signed = await issuing.sign(issue, rendered, context.db);
 			const pdf = Buffer.from(signed.pdf);
-			await context.finish(async (tx) => {
+			const keep = context.finish(async (tx) => {
 				await writeIssue(tx, issue.id, issue.attempt, {
 					state: 'done',
 					pdf,
@@ -47,11 +51,19 @@ export function issueReportJob(issuing: ReportIssuing): JobDefinition<'issue-rep
 				});
 				await issuing.publish(issue, signed, tx);
 			});
+			await keep.catch(async (cause: unknown) => {
+				if (!(cause instanceof NoExportsError)) throw cause;
+				// An outcome, not a fault: the file is dropped with its transaction, and paying mends it.
+				const { message, kind } = cause;
+				await context.finish((tx) =>
+					writeIssue(tx, issue.id, issue.attempt, { state: 'failed', problem: message, problemKind: kind })
+				);
+			});
 		},
 		async abandon({ issueId }, problem, tx) {
 			await tx
 				.update(issues)
-				.set({ state: 'failed', problem })
+				.set({ state: 'failed', problem, problemKind: 'fault' })
 				.where(and(eq(issues.id, issueId), ne(issues.state, 'done')));
 		}
 	};
