@@ -1,5 +1,5 @@
 /** Scope, opinion, review, signature, history, how to check, notices and references: what stands behind the answer. */
-import { dayText, instantText, recordFileName, type ReportModel } from '$lib/report';
+import { dayText, instantText, personText, recordFileName, type ReportModel } from '$lib/report';
 import { leading, colours, sizes, type DocumentKit, type Node } from '$lib/server/reports/render/kit';
 import { dataTable, numberCell, wordsCell } from './table';
 import { documentWords as words } from './wording';
@@ -24,19 +24,25 @@ export function opinion(kit: DocumentKit, model: ReportModel): Node[] {
 	];
 }
 
-function person(who: { name: string; role?: string }): string {
-	return who.role ? `${who.name}, ${who.role}` : who.name;
+/** What the report says of its review, bold; and the words of whoever approved it, as theirs. */
+function review(kit: DocumentKit, model: ReportModel): Node[] {
+	const { review: given } = model;
+	if (given.kind === 'not-reviewed') return [kit.paragraph([{ strong: words.notReviewed }])];
+	const by = personText(given.by);
+	const day = dayText(given.at);
+	const said = given.kind === 'reviewed' ? words.reviewed(by, day) : words.approvedByAuthor(by, day);
+	const statement = given.remarks?.trim() ?? '';
+	return [
+		kit.paragraph([{ strong: said }]),
+		...(statement === '' ? [] : kit.paragraphs(words.statement(statement)))
+	];
 }
 
 /** Who wrote, reviewed and authorised it, and exactly what the signature is. `signedAt` is null for a draft. */
 export function reviewAndSignature(kit: DocumentKit, model: ReportModel, signedAt: string | null): Node[] {
-	const review =
-		model.review.kind === 'reviewed'
-			? [words.reviewed(person(model.review.by), dayText(model.review.at)), model.review.remarks ?? '']
-			: [words.notReviewed];
 	const by = [
-		words.written(person(model.author)),
-		...(model.authoriser ? [words.authorised(person(model.authoriser))] : [])
+		words.written(personText(model.author)),
+		...(model.authoriser ? [words.authorised(personText(model.authoriser))] : [])
 	];
 	const signature = signedAt
 		? kit.paragraph(
@@ -47,7 +53,7 @@ export function reviewAndSignature(kit: DocumentKit, model: ReportModel, signedA
 		: kit.paragraph(words.unsigned);
 	return [
 		kit.heading(words.reviewAndSignature),
-		kit.paragraph([{ strong: review.filter(Boolean).join(' ') }]),
+		...review(kit, model),
 		kit.paragraph(by.join(' ')),
 		signature,
 		...(signedAt ? [kit.paragraph(words.signatureMeaning)] : [])

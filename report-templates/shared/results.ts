@@ -1,5 +1,5 @@
 /** Every output of the runs with what it averages: conventions side by side, not rival truths. */
-import type { ReportModel } from '$lib/report';
+import type { ReportModel, RunModel } from '$lib/report';
 import { capitalise } from '$lib/wording';
 import { sizes, type DocumentKit, type Node } from '$lib/server/reports/render/kit';
 import { dataTable, numberCell, wordsCell } from './table';
@@ -29,8 +29,39 @@ export function results(kit: DocumentKit, model: ReportModel): Node[] {
 					numberCell(kit, output.uncertainty ?? words.noUncertainty),
 					numberCell(kit, output.interval ?? words.noUncertainty)
 				])
-			)
+			),
+			...reviewerFigures(kit, run)
 		])
+	];
+}
+
+/** Kept apart from the results: what a reviewer found by another route, and what may be said of the two. */
+function reviewerFigures(kit: DocumentKit, run: RunModel): Node[] {
+	// Reports frozen before reviewers could enter figures have no such list.
+	const rows = run.reviewerFigures ?? [];
+	if (rows.length === 0) return [];
+	const sans = { font: 'Noto Sans', fontSize: sizes.table } as const;
+	return [
+		kit.heading(words.reviewerFigures, { level: 3 }),
+		kit.paragraph(words.reviewerFiguresMark, { italics: true }),
+		dataTable(
+			kit,
+			[
+				{ title: words.reviewerFiguresTable.quantity, width: 104 },
+				{ title: words.reviewerFiguresTable.figure, width: 84, align: 'right' },
+				{ title: words.reviewerFiguresTable.averages, width: 96 },
+				{ title: words.reviewerFiguresTable.route, width: '*' }
+			],
+			rows.map((row) => [
+				wordsCell(kit, capitalise(row.quantity)),
+				numberCell(kit, row.figure),
+				wordsCell(kit, row.averages),
+				wordsCell(kit, [
+					...kit.runs(`${row.route} (${row.by})\n`, sans),
+					...kit.runs(row.comparison, { ...sans, bold: true })
+				])
+			])
+		)
 	];
 }
 

@@ -75,7 +75,20 @@ export const documentWords = {
 		`What follows is the opinion of ${author}. It is drawn from the results above and is not itself a result.`,
 	reviewAndSignature: 'Review and signature',
 	notReviewed: 'Not independently reviewed: nobody but its author has checked this document.',
-	reviewed: (name: string, day: string) => `Reviewed by ${name} on ${day}, who did not write it.`,
+	reviewed: (name: string, day: string) =>
+		`Reviewed and approved by ${name}, on ${day}; the reviewer did not write it.`,
+	approvedByAuthor: (name: string, day: string) =>
+		`Not independently reviewed: approved by its author ${name}, on ${day}.`,
+	statement: (text: string) => `Statement at the approval: “${text}”`,
+	reviewerFigures: 'Figures of the reviewer, by another route',
+	reviewerFiguresMark:
+		'These were not computed by the methods of this report. Each stands for its reviewer alone; it is no result and changes none.',
+	reviewerFiguresTable: {
+		quantity: 'Beside the result',
+		figure: 'Reviewer’s figure',
+		averages: 'What it averages',
+		route: 'Route, by whom, and how it lies'
+	},
 	written: (name: string) => `Written by ${name}.`,
 	authorised: (name: string) => `Its issue was authorised by ${name}.`,
 	signed: (organisation: string, time: string) =>

@@ -41,12 +41,12 @@ interface Context {
 }
 
 /** Unit of a difference in a unit: degC is told in K. */
-function unitOfDifference(unit: string): string {
+export function unitOfDifference(unit: string): string {
 	return isTemperatureUnit(unit) ? differenceUnit(unit) : unit;
 }
 
 /** The number as typed, with a real minus sign; what was typed says how many digits are meant. */
-function typedNumber(text: string, value: number): string {
+export function typedNumber(text: string, value: number): string {
 	const parsed = parseNumber(text);
 	const decimals = /^[+\-−]?\d+([.,](\d+))?$/.exec(text.trim())?.[2]?.length ?? 0;
 	const plain = /^[+\-−]?\d+([.,]\d+)?$/.test(text.trim());

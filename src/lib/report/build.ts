@@ -23,6 +23,7 @@ import { assumptionRows, deviations, SourceList } from './assumptions';
 import { equationRows } from './equations';
 import { figureRows } from './figures';
 import { reportModelFormat, type FindingRow, type ReportModel, type RunModel } from './model';
+import { reviewerFigureRow } from './reviewer-figure';
 import type { ReportSource, RunSource } from './source';
 
 export interface BuildContext {
@@ -78,7 +79,7 @@ function citationOf(method: Method, source: string, sources: SourceList): string
  * @throws Error where the run gave no output.
  */
 export function buildRun(
-	source: Pick<ReportSource, 'temperatureUnit' | 'evidence'>,
+	source: Pick<ReportSource, 'temperatureUnit' | 'evidence' | 'reviewerFigures'>,
 	run: RunSource,
 	method: Method,
 	sources: SourceList
@@ -91,6 +92,11 @@ export function buildRun(
 	const worded = wordedOutputs(named, result, scale);
 	const lead = worded.find((output) => output.spec.id === leading);
 	const spec = outputSpec(named, leading);
+	const reviewerFigures = (source.reviewerFigures ?? []).flatMap((figure) => {
+		const output = result.outputs[figure.output];
+		if (figure.runId !== run.id || !output) return [];
+		return [reviewerFigureRow(figure, outputSpec(named, figure.output), output, scale)];
+	});
 	return {
 		id: run.id,
 		title: run.title,
@@ -120,6 +126,7 @@ export function buildRun(
 		})),
 		coverage:
 			lead && intervalLine(lead.presented, { scale }) ? percent(result.evaluation.coverage ?? 0.95) : null,
+		...(reviewerFigures.length > 0 ? { reviewerFigures } : {}),
 		assumptions: assumptionRows({ method, run, evidence: source.evidence, sources, leading }),
 		deviations: deviations(method, run),
 		equations: equationRows(method, result),

@@ -99,6 +99,20 @@ export interface FindingRow {
 	citation: string;
 }
 
+/** A reviewer's figure by another route, and what may be said of it beside the result. */
+export interface ReviewerFigureRow {
+	output: string;
+	/** Name of that output. */
+	quantity: string;
+	/** "62 °C, give or take 3 K", "not above 70 °C". */
+	figure: string;
+	averages: string;
+	route: string;
+	by: string;
+	/** Computed: never says that two numbers agree. */
+	comparison: string;
+}
+
 export interface RunModel {
 	id: string;
 	title: string;
@@ -113,6 +127,8 @@ export interface RunModel {
 	outputs: OutputRow[];
 	/** "95 %"; null where no interval was worked out. */
 	coverage: string | null;
+	/** Absent in reports that were frozen before reviewers could enter figures, and where nobody entered one. */
+	reviewerFigures?: ReviewerFigureRow[];
 	assumptions: AssumptionRow[];
 	/** Defaults of the method that were replaced, and options other than the usual ones, one sentence each. */
 	deviations: string[];

@@ -54,8 +54,28 @@ export interface EvidenceSource {
 	sha256: string;
 }
 
+/** `approved-by-author`: by one who wrote it, where the organisation's rules allow that; it counts as no review. */
 export type ReviewSource =
-	{ kind: 'not-reviewed' } | { kind: 'reviewed'; by: PersonSource; at: string; remarks?: string };
+	| { kind: 'not-reviewed' }
+	| { kind: 'reviewed' | 'approved-by-author'; by: PersonSource; at: string; remarks?: string };
+
+/** What a reviewer found by a route of their own, as typed. */
+export interface ReviewerFigureSource {
+	runId: string;
+	/** Output of the run's method that it stands beside. */
+	output: string;
+	/** A bound is one that the result must not pass. */
+	kind: 'value' | 'upper-bound' | 'lower-bound';
+	value: string;
+	unit: string;
+	/** Half the width of a range around a value, in the unit of a difference; empty where none was stated. */
+	giveOrTake: string;
+	/** What it averages, in words; empty where that was not stated. */
+	averages: string;
+	/** By which route. */
+	route: string;
+	by: PersonSource;
+}
 
 /** One line of the change history; `reason` is empty for a first issue. */
 export interface RevisionSource {
@@ -97,6 +117,8 @@ export interface ReportSource {
 	/** Every file that an assumption of these runs names. */
 	evidence: EvidenceSource[];
 	review: ReviewSource;
+	/** Reviewers' own figures beside the results, oldest first; those of other runs are left out. */
+	reviewerFigures?: ReviewerFigureSource[];
 	/** Earlier and present revisions, oldest first. */
 	history: RevisionSource[];
 	/** For the whole report; each calculation's own choice where it is left out. */
