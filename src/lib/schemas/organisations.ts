@@ -5,9 +5,9 @@ export const roleNames = ['owner', 'author', 'reviewer', 'reader', 'billing'] as
 
 /** What each role may do, as the pages say it. */
 export const roleMeaning: Readonly<Record<(typeof roleNames)[number], string>> = {
-	owner: 'runs the organisation: members, roles, letterhead',
-	author: 'writes dossiers and reports, issues them',
-	reviewer: 'reads everything, returns or approves reports',
+	owner: 'runs the organisation: members, roles, guests, letterhead, plan',
+	author: 'writes dossiers and reports, issues them, invites guests',
+	reviewer: 'reads everything, comments, returns or approves reports',
 	reader: 'reads everything',
 	billing: 'plan, invoices and card, nothing else'
 };
@@ -63,10 +63,31 @@ const severalRoles = z
 	.union([role.transform((one) => [one]), z.array(role)], 'Choose at least one role.')
 	.transform((all) => roleNames.filter((name) => all.includes(name)));
 
+const address = z
+	.string('Enter an e-mail address.')
+	.transform((text) => text.trim().normalize('NFC'))
+	.pipe(
+		z.email('Enter an e-mail address such as name@company.example.').max(254, 'This address is too long.')
+	);
+
+/** What cannot be undone wants a box ticked, also where no script asks. */
+const certain = (message: string) => z.literal('yes', message);
+
 export const rolesSchema = z.object({ userId: z.uuid(), roles: severalRoles });
-export const addMemberSchema = z.object({
-	email: z.email('Enter an e-mail address such as name@company.example.').max(254),
-	roles: severalRoles
+export const inviteMemberSchema = z.object({ email: address, roles: severalRoles });
+export const inviteGuestSchema = z.object({ email: address });
+export const invitationSchema = z.object({ id: z.uuid() });
+export const removeMemberSchema = z.object({
+	userId: z.uuid(),
+	certain: certain('Tick the box if this member is to be taken out.')
 });
-export const memberSchema = z.object({ userId: z.uuid() });
+export const endGuestSchema = z.object({
+	userId: z.uuid(),
+	certain: certain('Tick the box if this guest’s access is to end.')
+});
+export const leaveSchema = z.object({
+	organisationId: z.uuid(),
+	certain: certain('Tick the box if you are leaving.')
+});
+export const leaveDossierSchema = z.object({ certain: certain('Tick the box if you are leaving.') });
 export const switchSchema = z.object({ organisationId: z.uuid() });

@@ -1,12 +1,14 @@
 import { and, asc, eq, sql } from 'drizzle-orm';
 import { recordAudit } from '../access/audit';
-import { requireAction } from '../access/can';
-import { ConflictError, InvalidInputError, NotFoundError } from '../access/errors';
-import { limit } from '../access/limit';
+import { can, requireAction } from '../access/can';
+import { InvalidInputError, NotFoundError } from '../access/errors';
 import type { Membership, MemberRole } from '../access/membership';
-import { findAccountByEmail } from '../accounts/people';
+import type { Person } from '../accounts/person';
+import { seatsOf, type Seats } from '../billing/seats';
 import { database, type Database, type Queryable, type Transaction } from '../db';
-import { memberships, organisations, users } from '../db/schema';
+import { dossierGuests, memberships, users } from '../db/schema';
+import { revokeOpenOf } from './invitations/withdraw';
+import { lockMembers, memberOf, requireOwner } from './lock';
 
 export interface Member {
 	userId: string;
@@ -36,42 +38,15 @@ export async function listMembers(
 		.orderBy(asc(sql`lower(${users.name})`), asc(users.email));
 }
 
-/**
- * Adds somebody who has an account already.
- * @throws InvalidInputError when no confirmed account has the address, ConflictError when they are a member,
- * TooManyRequestsError after 60 tries of one owner within an hour
- */
-export async function addMember(
-	membership: Membership | null,
-	input: { email: string; roles: readonly MemberRole[] },
-	db: Database = database()
-): Promise<void> {
-	requireAction(membership, 'members.manage');
-	requireRoles(input.roles);
-	// The answer tells whether an address has an account, so nobody may ask for many.
-	await limit(`add-member:${membership.userId}`, 60, 3600, db);
-	await db.transaction(async (tx) => {
-		const account = await findAccountByEmail(tx, input.email);
-		if (account === null || !account.confirmed) {
-			const message = 'Nobody with this address has a confirmed account here.';
-			throw new InvalidInputError(message, { email: message });
-		}
-		const added = await tx
-			.insert(memberships)
-			.values({
-				organisationId: membership.organisationId,
-				userId: account.id,
-				roles: [...input.roles]
-			})
-			.onConflictDoNothing()
-			.returning({ userId: memberships.userId });
-		if (added.length === 0) throw new ConflictError('This person is a member already.');
-		await recordAudit(tx, membership, 'members.add', account.id, { roles: [...input.roles] });
-	});
+/** How many seats are taken, and how many there are. */
+export async function countSeats(membership: Membership | null, db: Queryable = database()): Promise<Seats> {
+	requireAction(membership, 'members.read');
+	return seatsOf(membership.organisationId, db);
 }
 
 /**
- * Gives a member other roles, which count from their next request on.
+ * Gives a member other roles, which count from their next request on. Invitations that they sent and could not send
+ * any more are revoked.
  * @throws ConflictError when the organisation would be left without an owner
  */
 export async function changeRoles(
@@ -87,62 +62,76 @@ export async function changeRoles(
 		const changed = await tx
 			.update(memberships)
 			.set({ roles: [...roles] })
-			.where(member(membership.organisationId, userId))
+			.where(memberOf(membership.organisationId, userId))
 			.returning({ userId: memberships.userId });
 		if (changed.length === 0) throw new NotFoundError('member');
 		await requireOwner(tx, membership.organisationId);
 		await recordAudit(tx, membership, 'members.roles', userId, { roles: [...roles] });
+		const now: Membership = { ...membership, userId, roles };
+		if (!can(now, 'members.manage')) await revokeOpenOf(tx, membership, userId, 'member');
+		if (!can(now, 'guests.manage')) await revokeOpenOf(tx, membership, userId, 'guest');
 	});
 }
 
+/** What goes with a membership: being a guest beside it, and the invitations that the person sent. */
+async function dropMember(
+	tx: Transaction,
+	by: Pick<Membership, 'organisationId' | 'userId'>,
+	userId: string
+): Promise<{ revoked: number }> {
+	await lockMembers(tx, by.organisationId);
+	const removed = await tx
+		.delete(memberships)
+		.where(memberOf(by.organisationId, userId))
+		.returning({ userId: memberships.userId });
+	if (removed.length === 0) throw new NotFoundError('member');
+	await requireOwner(tx, by.organisationId);
+	await tx
+		.delete(dossierGuests)
+		.where(and(eq(dossierGuests.organisationId, by.organisationId), eq(dossierGuests.userId, userId)));
+	const revoked =
+		(await revokeOpenOf(tx, by, userId, 'member')) + (await revokeOpenOf(tx, by, userId, 'guest'));
+	return { revoked };
+}
+
 /**
- * Takes somebody out of the organisation; what they wrote stays.
+ * Takes somebody out of the organisation, from their next request on; what they wrote stays. Open invitations that
+ * they sent are revoked.
+ * @returns how many invitations that were
  * @throws ConflictError when the organisation would be left without an owner
  */
 export async function removeMember(
 	membership: Membership | null,
 	userId: string,
 	db: Database = database()
-): Promise<void> {
+): Promise<{ revoked: number }> {
 	requireAction(membership, 'members.manage');
-	await db.transaction(async (tx) => {
-		await lockMembers(tx, membership.organisationId);
-		const removed = await tx
-			.delete(memberships)
-			.where(member(membership.organisationId, userId))
-			.returning({ userId: memberships.userId });
-		if (removed.length === 0) throw new NotFoundError('member');
-		await requireOwner(tx, membership.organisationId);
+	return db.transaction(async (tx) => {
+		const dropped = await dropMember(tx, membership, userId);
 		await recordAudit(tx, membership, 'members.remove', userId);
+		return dropped;
 	});
 }
 
-function member(organisationId: string, userId: string) {
-	return and(eq(memberships.organisationId, organisationId), eq(memberships.userId, userId));
+/**
+ * A member leaves by themselves, whatever their role.
+ * @throws NotFoundError when they are none, ConflictError when they are the last owner
+ */
+export async function leaveOrganisation(
+	person: Person,
+	organisationId: string,
+	db: Database = database()
+): Promise<void> {
+	const by = { organisationId, userId: person.id };
+	await db.transaction(async (tx) => {
+		await dropMember(tx, by, person.id);
+		await recordAudit(tx, by, 'members.leave', person.id);
+	});
 }
 
-function requireRoles(roles: readonly MemberRole[]): void {
+/** @throws InvalidInputError where no role is given */
+export function requireRoles(roles: readonly MemberRole[]): void {
 	if (roles.length > 0) return;
 	const message = 'Choose at least one role.';
 	throw new InvalidInputError(message, { roles: message });
-}
-
-/** One change of members at a time: two owners who demote each other at once must not both succeed. */
-async function lockMembers(tx: Transaction, organisationId: string): Promise<void> {
-	await tx
-		.select({ id: organisations.id })
-		.from(organisations)
-		.where(eq(organisations.id, organisationId))
-		.for('update');
-}
-
-/** Checked after the change and inside its transaction, which the error rolls back. */
-async function requireOwner(tx: Transaction, organisationId: string): Promise<void> {
-	const owners = await tx
-		.select({ userId: memberships.userId })
-		.from(memberships)
-		.where(and(eq(memberships.organisationId, organisationId), sql`'owner' = any(${memberships.roles})`));
-	if (owners.length === 0) {
-		throw new ConflictError('An organisation needs an owner. Make somebody else an owner first.');
-	}
 }

@@ -13,8 +13,9 @@ import { auditEvents, memberships, organisations, users } from '../db/schema';
 import { testDatabase } from '../testing/db';
 import { testOrganisation, testPerson } from '../testing/people';
 import { createOrganisation } from './create';
-import { addMember, changeRoles, listMembers, removeMember } from './members';
+import { changeRoles, leaveOrganisation, listMembers, removeMember } from './members';
 import { currentMembership, membershipIn, membershipsOf } from './memberships';
+import { enrolForSetUp } from './set-up';
 import { readOrganisation, updateOrganisation } from './settings';
 
 let db: Database;
@@ -41,7 +42,7 @@ async function owned() {
 async function withMember(roles: readonly MemberRole[]) {
 	const { owner, membership } = await owned();
 	const person = await testPerson(db, 'Member');
-	await addMember(membership, { email: person.email, roles }, db);
+	await enrolForSetUp(membership, { email: person.email, roles }, db);
 	const own = await membershipIn(person, membership.organisationId, db);
 	if (own === null) throw new Error('The member was not added.');
 	return { owner, membership, person, own };
@@ -123,20 +124,10 @@ describe('members', () => {
 		await expect(listMembers(own, db)).rejects.toThrow(NotFoundError);
 	});
 
-	it('are not a way to ask for thousands of addresses whether they have an account', async () => {
-		const { membership } = await owned();
-		const ask = (i: number) =>
-			addMember(membership, { email: `guess-${i}@nowhere.example`, roles: ['reader'] }, db);
-		const tries = await Promise.allSettled(Array.from({ length: 64 }, (_, i) => ask(i)));
-		const reasons = tries.map((one) => (one.status === 'rejected' ? (one.reason as unknown) : null));
-		expect(reasons.filter((reason) => reason instanceof InvalidInputError)).toHaveLength(60);
-		expect(reasons.filter((reason) => reason instanceof TooManyRequestsError)).toHaveLength(4);
-	});
-
-	it('need a confirmed account, are added once and with a role', async () => {
+	it('set up need a confirmed account, are added once and with a role', async () => {
 		const { membership, person } = await withMember(['reader']);
 		const add = (email: string, roles: readonly MemberRole[] = ['reader']) =>
-			addMember(membership, { email, roles }, db);
+			enrolForSetUp(membership, { email, roles }, db);
 		await expect(add('nobody@test.example')).rejects.toThrow(InvalidInputError);
 		await expect(add(person.email)).rejects.toThrow(ConflictError);
 		const other = await testPerson(db);
@@ -152,7 +143,7 @@ describe('members', () => {
 		await expect(changeRoles(own, person.id, ['owner'], db)).rejects.toThrow(refusal);
 		await expect(removeMember(own, owner.id, db)).rejects.toThrow(refusal);
 		const another = await testPerson(db);
-		await expect(addMember(own, { email: another.email, roles: ['owner'] }, db)).rejects.toThrow(refusal);
+		await expect(enrolForSetUp(own, { email: another.email, roles: ['owner'] }, db)).rejects.toThrow(refusal);
 		expect(await rolesOf(membership, person.id)).toEqual([role]);
 		expect(await listMembers(membership, db)).toHaveLength(2);
 	});
@@ -195,6 +186,39 @@ describe('members', () => {
 		expect(outcomes.filter((one) => one.status === 'fulfilled')).toHaveLength(1);
 		const roles = (await listMembers(membership, db)).flatMap((one) => one.roles);
 		expect(roles.filter((role) => role === 'owner')).toHaveLength(1);
+	});
+});
+
+describe('leaving', () => {
+	it('is open to every role, counts at once, and is noted', async () => {
+		const { membership, person, own } = await withMember(['reader']);
+		await leaveOrganisation(person, own.organisationId, db);
+		expect(await currentMembership(person, membership.organisationId, db)).toBeNull();
+		const events = await db.select().from(auditEvents).where(eq(auditEvents.subject, person.id));
+		expect(events.map(({ action, userId }) => [action, userId])).toContainEqual(['members.leave', person.id]);
+		await expect(leaveOrganisation(person, own.organisationId, db)).rejects.toThrow(NotFoundError);
+	});
+
+	it('is not open to the last owner, who is told what to do first', async () => {
+		const { owner, membership, person } = await withMember(['reader']);
+		await expect(leaveOrganisation(owner, membership.organisationId, db)).rejects.toThrow(
+			/Make somebody else an owner first/
+		);
+		await changeRoles(membership, person.id, ['owner'], db);
+		await leaveOrganisation(owner, membership.organisationId, db);
+		expect((await listMembers({ ...membership, userId: person.id }, db)).map((one) => one.userId)).toEqual([
+			person.id
+		]);
+	});
+
+	it('leaves an owner also when both owners leave at the same moment', async () => {
+		const { owner, membership, person } = await withMember(['owner']);
+		const outcomes = await Promise.allSettled([
+			leaveOrganisation(owner, membership.organisationId, db),
+			leaveOrganisation(person, membership.organisationId, db)
+		]);
+		expect(outcomes.filter((one) => one.status === 'fulfilled')).toHaveLength(1);
+		expect(await listMembers(membership, db)).toHaveLength(1);
 	});
 });
 

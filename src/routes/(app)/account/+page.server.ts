@@ -1,8 +1,13 @@
 import { error, redirect } from '@sveltejs/kit';
 import { changePasswordSchema, nameSchema, sessionSchema } from '$lib/schemas/accounts';
+import { leaveSchema, switchSchema } from '$lib/schemas/organisations';
+import { homeOf } from '$lib/server/access/home';
 import { changeName, changePassword } from '$lib/server/accounts/own-account';
 import { closeAllSessions, listSessions, revokeSession } from '$lib/server/accounts/sessions';
 import { orFormFault, readForm, typedValues } from '$lib/server/http/forms';
+import { chooseOrganisation } from '$lib/server/organisations/current';
+import { leaveOrganisation } from '$lib/server/organisations/members';
+import { membershipIn } from '$lib/server/organisations/memberships';
 import type { Person } from '$lib/server/accounts/person';
 import type { Actions, PageServerLoad } from './$types';
 
@@ -53,5 +58,28 @@ export const actions: Actions = {
 	revokeOthers: async ({ locals }) => {
 		await closeAllSessions(signedIn(locals).id, locals.sessionId);
 		return { errors: none, values: none, done: 'All your other sessions have ended.' };
+	},
+	switch: async (event) => {
+		const person = signedIn(event.locals);
+		const read = readForm(await event.request.formData(), switchSchema);
+		if ('fault' in read) return read.fault;
+		const wanted = await membershipIn(person, read.data.organisationId);
+		if (wanted === null) error(404, 'This organisation does not exist, or you have no access to it.');
+		chooseOrganisation(event.cookies, wanted.organisationId);
+		redirect(303, homeOf(wanted));
+	},
+	leave: async (event) => {
+		const person = signedIn(event.locals);
+		const form = await event.request.formData();
+		const read = readForm(form, leaveSchema);
+		if ('fault' in read) return read.fault;
+		const work = leaveOrganisation(person, read.data.organisationId);
+		const done = await orFormFault(event, work, typedValues(form));
+		if ('fault' in done) return done.fault;
+		return {
+			errors: none,
+			values: none,
+			done: 'You have left the organisation. What you wrote there stays.'
+		};
 	}
 };

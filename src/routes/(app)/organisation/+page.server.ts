@@ -1,28 +1,41 @@
-import { error, redirect } from '@sveltejs/kit';
+import { fail } from '@sveltejs/kit';
 import {
-	addMemberSchema,
-	memberSchema,
+	inviteMemberSchema,
+	invitationSchema,
 	organisationSchema,
-	rolesSchema,
-	switchSchema
+	removeMemberSchema,
+	rolesSchema
 } from '$lib/schemas/organisations';
 import { can } from '$lib/server/access/can';
 import { orHttpError } from '$lib/server/http/errors';
 import { orFormFault, readForm, typedValues } from '$lib/server/http/forms';
-import { chooseOrganisation } from '$lib/server/organisations/current';
-import { addMember, changeRoles, listMembers, removeMember } from '$lib/server/organisations/members';
-import { membershipIn } from '$lib/server/organisations/memberships';
+import { inviteMember } from '$lib/server/organisations/invitations/invite';
+import { listOpenInvitations } from '$lib/server/organisations/invitations/open';
+import { toldOf } from '$lib/server/organisations/invitations/send';
+import { resendInvitation, revokeInvitation } from '$lib/server/organisations/invitations/withdraw';
+import { changeRoles, countSeats, listMembers, removeMember } from '$lib/server/organisations/members';
 import { readOrganisation, updateOrganisation } from '$lib/server/organisations/settings';
 import type { Actions, PageServerLoad } from './$types';
 
-export const load: PageServerLoad = async ({ locals: { membership } }) => ({
-	settings: await orHttpError(readOrganisation(membership)),
-	members: can(membership, 'members.read') ? await listMembers(membership) : [],
-	mayManage: can(membership, 'organisation.manage'),
-	mayManageMembers: can(membership, 'members.manage')
-});
+export const load: PageServerLoad = async ({ locals: { membership } }) => {
+	const seesMembers = can(membership, 'members.read');
+	return {
+		settings: await orHttpError(readOrganisation(membership)),
+		members: seesMembers ? await listMembers(membership) : [],
+		seats: seesMembers ? await countSeats(membership) : null,
+		invitations: await listOpenInvitations(membership, { kind: 'member' }),
+		mayManage: can(membership, 'organisation.manage'),
+		mayManageMembers: can(membership, 'members.manage'),
+		mayPay: can(membership, 'billing.manage')
+	};
+};
 
 const none: Record<string, string> = {};
+
+/** A field that is given several times comes back as one text, so that the boxes stay as they were ticked. */
+function typedInvitation(form: FormData): Record<string, string> {
+	return { email: String(form.get('email') ?? ''), roles: form.getAll('roles').join(' ') };
+}
 
 export const actions: Actions = {
 	save: async (event) => {
@@ -34,39 +47,58 @@ export const actions: Actions = {
 		if ('fault' in done) return done.fault;
 		return { errors: none, values: none, done: 'The letterhead and the rules are saved.' };
 	},
-	add: async (event) => {
+	invite: async (event) => {
 		const form = await event.request.formData();
-		const read = readForm(form, addMemberSchema);
-		if ('fault' in read) return read.fault;
-		const work = addMember(event.locals.membership, read.data);
-		const done = await orFormFault(event, work, typedValues(form));
+		const read = readForm(form, inviteMemberSchema);
+		if ('fault' in read) return fail(400, { errors: read.fault.data.errors, values: typedInvitation(form) });
+		const work = inviteMember(event.locals.membership, read.data);
+		const done = await orFormFault(event, work, typedInvitation(form));
 		if ('fault' in done) return done.fault;
-		return { errors: none, values: none, done: 'The new member is in.' };
+		return { errors: none, values: none, ...toldOf(done.data) };
+	},
+	resend: async (event) => {
+		const read = readForm(await event.request.formData(), invitationSchema);
+		if ('fault' in read) return read.fault;
+		const done = await orFormFault(event, resendInvitation(event.locals.membership, read.data.id));
+		if ('fault' in done) return done.fault;
+		return { errors: none, values: none, ...toldOf(done.data) };
+	},
+	revoke: async (event) => {
+		const read = readForm(await event.request.formData(), invitationSchema);
+		if ('fault' in read) return read.fault;
+		const done = await orFormFault(event, revokeInvitation(event.locals.membership, read.data.id));
+		if ('fault' in done) return done.fault;
+		return {
+			errors: none,
+			values: none,
+			done: `The invitation of ${done.data.email} is taken back. Its link no longer works.`
+		};
 	},
 	roles: async (event) => {
-		const read = readForm(await event.request.formData(), rolesSchema);
+		const form = await event.request.formData();
+		const read = readForm(form, rolesSchema);
 		if ('fault' in read) return read.fault;
 		const work = changeRoles(event.locals.membership, read.data.userId, read.data.roles);
-		const done = await orFormFault(event, work);
+		const done = await orFormFault(event, work, typedValues(form));
 		if ('fault' in done) return done.fault;
 		return { errors: none, values: none, done: 'The roles are changed. They count from now on.' };
 	},
 	remove: async (event) => {
-		const read = readForm(await event.request.formData(), memberSchema);
+		const form = await event.request.formData();
+		const read = readForm(form, removeMemberSchema);
 		if ('fault' in read) return read.fault;
 		const work = removeMember(event.locals.membership, read.data.userId);
-		const done = await orFormFault(event, work);
+		const done = await orFormFault(event, work, typedValues(form));
 		if ('fault' in done) return done.fault;
-		return { errors: none, values: none, done: 'The member is taken out. What they wrote stays.' };
-	},
-	switch: async (event) => {
-		const { person } = event.locals;
-		if (person === null) error(401, 'Please sign in first.');
-		const read = readForm(await event.request.formData(), switchSchema);
-		if ('fault' in read) return read.fault;
-		const wanted = await membershipIn(person, read.data.organisationId);
-		if (wanted === null) error(404, 'This organisation does not exist, or you have no access to it.');
-		chooseOrganisation(event.cookies, wanted.organisationId);
-		redirect(303, '/dossiers');
+		const { revoked } = done.data;
+		const taken =
+			revoked === 0
+				? ''
+				: ` ${revoked === 1 ? 'One open invitation that they had sent is' : `${revoked} open invitations that they had sent are`} taken back.`;
+		return {
+			errors: none,
+			values: none,
+			done: `The member is taken out, and a seat is free. What they wrote stays.${taken}`
+		};
 	}
 };

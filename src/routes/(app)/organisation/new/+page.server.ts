@@ -1,5 +1,6 @@
 import { error, redirect } from '@sveltejs/kit';
 import { newOrganisationSchema } from '$lib/schemas/organisations';
+import { homeOf } from '$lib/server/access/home';
 import { orFormFault, readForm, typedValues } from '$lib/server/http/forms';
 import { createOrganisation } from '$lib/server/organisations/create';
 import { chooseOrganisation } from '$lib/server/organisations/current';
@@ -15,6 +16,6 @@ export const actions: Actions = {
 		const done = await orFormFault(event, createOrganisation(person, read.data), typedValues(form));
 		if ('fault' in done) return done.fault;
 		chooseOrganisation(event.cookies, done.data.organisationId);
-		redirect(303, '/dossiers');
+		redirect(303, homeOf(done.data));
 	}
 };
