@@ -15,6 +15,7 @@ export default defineConfig({
 				worker: 'src/worker/main.ts',
 				'compute-thread': 'src/worker/compute-thread.ts',
 				migrate: 'src/worker/migrate.ts',
+				catalogue: 'src/worker/catalogue.ts',
 				demo: 'src/worker/demo.ts'
 			},
 			output: { entryFileNames: '[name].js' }

@@ -41,6 +41,13 @@ async function main(): Promise<void> {
 	};
 	askForPurge();
 	const hourly = setInterval(askForPurge, 3_600_000);
+	const askForReconciliation = () => {
+		enqueue(db, 'billing-reconcile', {}, { oncePerSeconds: 86_400 }).catch((error: unknown) =>
+			log.warn({ err: error }, 'the daily comparison with the payment service could not be asked for')
+		);
+	};
+	askForReconciliation();
+	const daily = setInterval(askForReconciliation, 3_600_000);
 	log.info({ worker: worker.id, concurrency }, 'worker ready');
 
 	let stopping = false;
@@ -50,6 +57,7 @@ async function main(): Promise<void> {
 		log.info({ signal }, 'worker stopping');
 		clearInterval(heart);
 		clearInterval(hourly);
+		clearInterval(daily);
 		await runner.stop(graceMilliseconds);
 		await signOff(db, worker.id).catch(() => undefined);
 		await closeDatabase();

@@ -144,16 +144,14 @@ export async function debitExport(tx: Transaction, organisationId: string, issue
 	await grantMonth(organisationId, standing, tx);
 	const [grant] = spendable(await grantsOf(organisationId, tx), allowanceOf(standing), standing.now);
 	if (grant === undefined) throw new NoExportsError(refusal(standing));
-	await tx
-		.insert(exportDebits)
-		.values({
-			organisationId,
-			grantId: grant.id,
-			kind: 'issue',
-			issueId,
-			key: `issue:${issueId}`,
-			amount: 1
-		});
+	await tx.insert(exportDebits).values({
+		organisationId,
+		grantId: grant.id,
+		kind: 'issue',
+		issueId,
+		key: `issue:${issueId}`,
+		amount: 1
+	});
 }
 
 /** Exports to try: once for whoever founds an organisation, however many they found. */

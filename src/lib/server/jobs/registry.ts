@@ -1,3 +1,5 @@
+import { billingEventJob } from './handlers/billing-event';
+import { billingReconcileJob } from './handlers/billing-reconcile';
 import { computeRunJob, type ComputeBeside } from './handlers/compute-run';
 import { issueReportJob, type ReportIssuing } from './handlers/issue-report';
 import { purgeDeletedJob } from './handlers/purge-deleted';
@@ -25,7 +27,7 @@ export function jobDefinitions({ compute, issuing, preview }: JobParts): JobDefi
 		'render-preview': renderPreviewJob(preview),
 		'purge-deleted': purgeDeletedJob,
 		'send-notice': unasked,
-		'billing-event': unasked,
-		'billing-reconcile': unasked
+		'billing-event': billingEventJob,
+		'billing-reconcile': billingReconcileJob
 	};
 }
