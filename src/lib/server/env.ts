@@ -20,8 +20,6 @@ const schema = z.object({
 	STRIPE_API_URL: z.url({ protocol: /^https?$/ }).optional(),
 	/** Origins of its pages for payment and for customers, separated by spaces: forms may lead there. */
 	STRIPE_PAGES: z.string().default('https://checkout.stripe.com https://billing.stripe.com'),
-	/** Another file of plans than the one that is shipped. */
-	PLANS_FILE: z.string().min(1).optional(),
 	LOG_LEVEL: z.enum(['fatal', 'error', 'warn', 'info', 'debug', 'silent']).default('info'),
 	/** `development` shows the local mail reader and the demo's sign-ins. */
 	NOONMARK_MODE: z.enum(['production', 'development']).default('production'),
