@@ -19,8 +19,7 @@ const loaders = ['findDossier', 'getCalculation', 'getVersion', 'getRun', 'getRe
 const exceptions: Readonly<Record<string, string>> = {
 	'reports/change.ts nextNumber':
 		'counts the numbers of the whole organisation, and is asked by authors alone',
-	'reports/issue.ts authoriserOf': 'reads the name of the person who asks',
-	'reports/issue.ts tryAgain': 'is given the issue by its caller, which loaded the report'
+	'reports/issue.ts authoriserOf': 'reads the name of the person who asks'
 };
 
 interface Found {

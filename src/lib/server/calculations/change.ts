@@ -14,6 +14,7 @@ import { database, type Database, type Queryable } from '../db';
 import { calculations, calculationVersions, evidence } from '../db/schema';
 import { findDossier } from '../dossiers/find';
 import { touchDossier } from '../dossiers/touch';
+import { voidStaleApprovals } from '../reviews/approval';
 import { getCalculation, getVersion } from './load';
 
 /** Saves of one person within this time are one version: typing a number is not twenty versions. */
@@ -144,6 +145,11 @@ export async function saveDraft(
 			.where(eq(calculations.id, id));
 		await keepVersion(id, { version, draft, ownVersion: given.ownVersion === true }, membership.userId, tx);
 		await touchDossier(tx, membership, before.dossier.id);
+		if (title !== locked.title) {
+			// A report prints the title; what it prints of the rest stands in its runs, which never change.
+			const { id: dossierId } = before.dossier;
+			await voidStaleApprovals(tx, membership, { dossierId }, 'A calculation was renamed');
+		}
 		return version;
 	});
 }

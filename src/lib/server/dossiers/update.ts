@@ -7,6 +7,7 @@ import type { Membership } from '../access/membership';
 import { inReach } from '../access/reach';
 import { database, type Database } from '../db';
 import { dossiers } from '../db/schema';
+import { voidStaleApprovals } from '../reviews/approval';
 import { findDossier } from './find';
 
 /**
@@ -47,5 +48,6 @@ export async function updateDossier(
 		await recordAudit(tx, membership, 'dossier.update', id, {
 			fields: names.filter((name) => fields[name] !== before[name])
 		});
+		await voidStaleApprovals(tx, membership, { dossierId: id }, 'The dossier was changed');
 	});
 }

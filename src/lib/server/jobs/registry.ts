@@ -4,6 +4,7 @@ import { computeRunJob, type ComputeBeside } from './handlers/compute-run';
 import { issueReportJob, type ReportIssuing } from './handlers/issue-report';
 import { purgeDeletedJob } from './handlers/purge-deleted';
 import { renderPreviewJob, type PreviewRendering } from './handlers/render-preview';
+import { sendNoticeJob } from './handlers/send-notice';
 import type { JobDefinition, JobDefinitions } from './job';
 
 /** What the jobs need from the process that runs them. */
@@ -26,7 +27,7 @@ export function jobDefinitions({ compute, issuing, preview }: JobParts): JobDefi
 		'issue-report': issueReportJob(issuing),
 		'render-preview': renderPreviewJob(preview),
 		'purge-deleted': purgeDeletedJob,
-		'send-notice': unasked,
+		'send-notice': sendNoticeJob(),
 		'billing-event': billingEventJob,
 		'billing-reconcile': billingReconcileJob
 	};

@@ -3,6 +3,8 @@ import { env } from '../env';
 import { log } from '../log';
 
 export interface Mail {
+	/** What the mail is about, by which two copies of it are known as one. */
+	id?: string;
 	to: { name: string; address: string };
 	subject: string;
 	text: string;
@@ -53,6 +55,7 @@ export async function sendMail(mail: Mail): Promise<void> {
 		subject: oneLine(mail.subject),
 		text: mail.text,
 		html: mail.html,
+		...(mail.id === undefined ? {} : { messageId: `<${mail.id}@${new URL(env().ORIGIN).hostname}>` }),
 		headers: { 'Auto-Submitted': 'auto-generated' }
 	};
 	for (const attempt of [1, 2]) {

@@ -7,6 +7,7 @@ import { NotFoundError } from '../access/errors';
 import type { Membership } from '../access/membership';
 import { database, type Database, type Queryable } from '../db';
 import { organisations } from '../db/schema';
+import { voidStaleApprovals } from '../reviews/approval';
 
 export interface OrganisationSettings {
 	id: string;
@@ -57,5 +58,6 @@ export async function updateOrganisation(
 		await recordAudit(tx, membership, 'organisation.update', membership.organisationId, {
 			selfApproval: input.selfApproval
 		});
+		await voidStaleApprovals(tx, membership, 'organisation', 'The organisation’s letterhead was changed');
 	});
 }

@@ -12,7 +12,7 @@ import { organisations, reports } from '../db/schema';
 import { findDossier } from '../dossiers/find';
 import { touchDossier } from '../dossiers/touch';
 import { getReport, runChoices, runsOf, type ReportView } from './load';
-import { modelOf } from './model';
+import { modelOf, unissued } from './model';
 
 const long = z.string().max(20_000, 'At most 20 000 characters.').transform(storable);
 
@@ -81,18 +81,14 @@ export async function createReport(
 				title: dossier.title,
 				text: { ...emptyReportText, question: dossier.question },
 				runIds,
-				createdBy: membership.userId
+				createdBy: membership.userId,
+				writers: [membership.userId]
 			})
 			.returning({ id: reports.id });
 		if (row === undefined) throw new Error('The report was not stored.');
 		if (runIds.length > 0) {
 			const report = await getReport(membership, row.id, tx);
-			const model = await modelOf(
-				membership,
-				report,
-				{ verification: null, issueDate: null, authoriser: null },
-				tx
-			);
+			const model = await modelOf(membership, report, unissued, tx);
 			const text: ReportText = { ...report.text, answer: model.composedAnswer };
 			await tx.update(reports).set({ text }).where(eq(reports.id, row.id));
 		}
@@ -121,11 +117,14 @@ async function requireLiving(
 
 /** What may still be written in: a draft, or one that came back. */
 function requireOpen(report: ReportView): void {
-	if (report.state !== 'draft' && report.state !== 'returned') {
-		throw new ConflictError(
-			`Report ${report.number} is ${report.state}; it can no longer be changed. A correction is a new revision.`
-		);
-	}
+	if (report.state === 'draft' || report.state === 'returned') return;
+	const way =
+		report.state === 'in-review'
+			? 'is in review; take it back first to change it.'
+			: report.state === 'approved'
+				? 'is approved; open it again first to change it, which makes the approval void. Once its issue was asked for, a correction is a new revision.'
+				: `is ${report.state}; it can no longer be changed. A correction is a new revision.`;
+	throw new ConflictError(`Report ${report.number} ${way}`);
 }
 
 /**
@@ -160,6 +159,8 @@ export async function saveReport(
 	}
 	const { title, text, runIds, baseVersion } = parsed.data;
 	return db.transaction(async (tx) => {
+		// First, because whoever reviews or issues holds the dossier before the report.
+		await touchDossier(tx, membership, before.dossier.id);
 		await runsOf(membership, runIds, before.dossier.id, tx);
 		const [locked] = await tx
 			.select({ version: reports.version, state: reports.state, runIds: reports.runIds })
@@ -181,11 +182,12 @@ export async function saveReport(
 				title,
 				text,
 				runIds: inStandingOrder(runIds, locked.runIds),
+				writers: sql`case when ${membership.userId}::uuid = any(${reports.writers}) then ${reports.writers}
+					else array_append(${reports.writers}, ${membership.userId}::uuid) end`,
 				version: baseVersion + 1,
 				updatedAt: sql`now()`
 			})
 			.where(eq(reports.id, id));
-		await touchDossier(tx, membership, before.dossier.id);
 		return baseVersion + 1;
 	});
 }

@@ -1,21 +1,24 @@
 import { X509Certificate } from 'node:crypto';
 import { and, desc, eq, sql } from 'drizzle-orm';
-import { engineVersion } from '$lib/record';
-import { unmetDuties, type Duty, type ReportModel } from '$lib/report';
+import type { Duty, ReportModel } from '$lib/report';
 import { recordAudit } from '../access/audit';
 import { requireAction } from '../access/can';
-import { ConflictError, ForbiddenError, InvalidInputError, NotFoundError } from '../access/errors';
+import { ConflictError, InvalidInputError, NotFoundError } from '../access/errors';
 import type { Membership } from '../access/membership';
 import { inReach } from '../access/reach';
 import { requireExport } from '../billing/ledger';
-import { database, type Database, type Queryable } from '../db';
-import { issues, organisations, reports, users } from '../db/schema';
+import { lockOrganisation } from '../billing/standing';
+import { database, type Database, type Queryable, type Transaction } from '../db';
+import { issues, reports, users } from '../db/schema';
 import { env } from '../env';
 import { enqueue } from '../jobs/queue';
+import { holdReport } from '../reviews/hold';
 import { ensureOrganisationCertificate, rootPem } from '../signing/authority';
+import { authorisationOf } from './authorise';
 import { newCode } from './code';
 import { getReport, type ReportView } from './load';
-import { modelOf, requirePrintable } from './model';
+import { modelOf, requirePrintable, unissued, type Circumstances } from './model';
+import { openDuties } from './open-duties';
 
 export interface IssueView {
 	id: string;
@@ -85,20 +88,7 @@ export async function dutiesOf(
 	if (report.runIds.length === 0) {
 		return [{ code: 'no-run', message: 'Choose at least one result to report.', place: 'runs' }];
 	}
-	const circumstances = { verification: null, issueDate: null, authoriser: null };
-	return openDuties(await modelOf(membership, report, circumstances, db));
-}
-
-/** The report's own duties, and that every figure is one that this version of the code computes. */
-function openDuties(model: ReportModel): Duty[] {
-	const outdated = model.runs
-		.filter((run) => run.engineVersion !== engineVersion)
-		.map((run) => ({
-			code: 'outdated-run',
-			message: `“${run.title}” was computed by version ${run.engineVersion} of the computing code, and this is ${engineVersion}: compute it again.`,
-			place: `run:${run.id}`
-		}));
-	return [...unmetDuties(model), ...outdated];
+	return openDuties(await modelOf(membership, report, unissued, db));
 }
 
 async function authoriserOf(membership: Membership, db: Queryable): Promise<{ name: string; role: string }> {
@@ -111,6 +101,7 @@ async function authoriserOf(membership: Membership, db: Queryable): Promise<{ na
  * after a failure it is tried again with the same code.
  * @returns the issue's id
  * @throws InvalidInputError while a duty is unmet, ForbiddenError where the organisation wants a second reader,
+ * ConflictError while it is in review or returned, or where its approval does not hold any more (it is void then),
  * NoExportsError where no export is left: the report stays as it is.
  */
 export async function issueReport(
@@ -124,78 +115,96 @@ export async function issueReport(
 	// Made now, not by the worker: a certificate must be older than the time that the report states.
 	await ensureOrganisationCertificate(db, membership.organisationId);
 	const rootFingerprint = root.fingerprint256.replaceAll(':', '').toLowerCase();
-	return db.transaction(async (tx) => {
-		const [locked] = await tx
-			.select({ state: reports.state })
-			.from(reports)
-			.where(eq(reports.id, id))
-			.for('update');
-		if (locked === undefined) throw new NotFoundError('report');
-		const report = await getReport(membership, id, tx);
+	const under = await issueOf(membership, seen, db);
+	if (under !== null && under.state !== 'failed') return under.id;
+	const outcome = await db.transaction(async (tx): Promise<{ id: string } | { voided: string }> => {
+		// The organisation's row before all others, as everywhere: an export is counted under it.
+		await lockOrganisation(tx, membership.organisationId);
+		const report = await holdReport(tx, membership, seen);
 		const before = await issueOf(membership, report, tx);
-		if (before !== null && before.state !== 'failed') return before.id;
-		if (before === null && locked.state !== 'draft' && locked.state !== 'returned') {
-			throw new ConflictError(`Report ${seen.number} is ${locked.state} and cannot be issued again.`);
-		}
+		if (before !== null && before.state !== 'failed') return { id: before.id };
+		const authorised = await authorisationOf(membership, report, tx);
+		if ('voided' in authorised) return authorised;
 		await requireExport(tx, membership.organisationId);
-		if (before !== null) return tryAgain(membership, before.id, tx);
-
-		const [policy] = await tx
-			.select({ selfApproval: organisations.selfApproval })
-			.from(organisations)
-			.where(eq(organisations.id, membership.organisationId));
-		if (policy?.selfApproval !== true) {
-			throw new ForbiddenError(
-				'Your organisation requires a second reader’s approval before a report is issued.'
-			);
-		}
-		const [clock] = (await tx.execute<{ now: string }>(sql`select now()::text as now`)).rows;
-		const now = new Date(clock?.now ?? '');
-		const code = newCode();
-		const model: ReportModel = await modelOf(
-			membership,
-			report,
-			{
-				verification: { address: `${env().ORIGIN}/verify`, code, rootFingerprint },
-				issueDate: now,
-				authoriser: await authoriserOf(membership, tx)
-			},
-			tx
-		);
-		requirePrintable(model);
-		const unmet = openDuties(model);
-		if (unmet.length > 0) {
-			throw new InvalidInputError(
-				'The report still owes its reader something.',
-				Object.fromEntries(unmet.map((duty) => [duty.place, duty.message]))
-			);
-		}
-		const [row] = await tx
-			.insert(issues)
-			.values({
-				organisationId: membership.organisationId,
-				reportId: id,
-				revision: report.revision,
-				code,
-				model,
-				requestedBy: membership.userId
-			})
-			.returning({ id: issues.id });
-		if (row === undefined) throw new Error('The issue was not stored.');
-		await tx
-			.update(reports)
-			.set({ state: 'approved', updatedAt: sql`now()` })
-			.where(eq(reports.id, id));
-		await enqueue(tx, 'issue-report', { issueId: row.id }, { organisationId: membership.organisationId });
-		await recordAudit(tx, membership, 'report.issue', id, { issue: row.id });
-		return row.id;
+		const code = before?.code ?? newCode();
+		const verification = { address: `${env().ORIGIN}/verify`, code, rootFingerprint };
+		const model = await issuedModel(membership, report, { verification, review: authorised.review }, tx);
+		const issueId = await queueIssue(membership, report, { code, model, failed: before?.id ?? null }, tx);
+		return { id: issueId };
 	});
+	if ('id' in outcome) return outcome.id;
+	throw new ConflictError(
+		`The approval of report ${seen.number} does not hold any more. ${outcome.voided} It is a draft again: send it for review.`
+	);
 }
 
-async function tryAgain(membership: Membership, issueId: string, tx: Queryable): Promise<string> {
-	await tx.update(issues).set({ state: 'queued', problem: null }).where(eq(issues.id, issueId));
-	await enqueue(tx, 'issue-report', { issueId }, { organisationId: membership.organisationId });
-	return issueId;
+/** The database's clock, which every process shares. */
+async function presentTime(tx: Transaction): Promise<Date> {
+	const [clock] = (await tx.execute<{ now: string }>(sql`select now()::text as now`)).rows;
+	return new Date(clock?.now ?? '');
+}
+
+/**
+ * What will be printed, with the day and the name of this moment.
+ * @throws InvalidInputError with what is owed by place
+ */
+async function issuedModel(
+	membership: Membership,
+	report: ReportView,
+	given: Pick<Circumstances, 'verification' | 'review'>,
+	tx: Transaction
+): Promise<ReportModel> {
+	const model = await modelOf(
+		membership,
+		report,
+		{
+			...given,
+			state: 'issued',
+			issueDate: await presentTime(tx),
+			authoriser: await authoriserOf(membership, tx)
+		},
+		tx
+	);
+	requirePrintable(model);
+	const unmet = openDuties(model);
+	if (unmet.length > 0) {
+		throw new InvalidInputError(
+			'The report still owes its reader something.',
+			Object.fromEntries(unmet.map((duty) => [duty.place, duty.message]))
+		);
+	}
+	return model;
+}
+
+/** Stores what will be printed and queues its rendering. After a failure it is the same issue with the same code. */
+async function queueIssue(
+	membership: Membership,
+	report: Pick<ReportView, 'id' | 'revision'>,
+	given: { code: string; model: ReportModel; failed: string | null },
+	tx: Transaction
+): Promise<string> {
+	const { organisationId, userId } = membership;
+	const { code, model } = given;
+	const frozen = { model, requestedBy: userId, requestedAt: sql`now()` };
+	const [row] =
+		given.failed === null
+			? await tx
+					.insert(issues)
+					.values({ organisationId, reportId: report.id, revision: report.revision, code, ...frozen })
+					.returning({ id: issues.id })
+			: await tx
+					.update(issues)
+					.set({ state: 'queued', problem: null, problemKind: null, ...frozen })
+					.where(eq(issues.id, given.failed))
+					.returning({ id: issues.id });
+	if (row === undefined) throw new Error('The issue was not stored.');
+	await tx
+		.update(reports)
+		.set({ state: 'approved', updatedAt: sql`now()` })
+		.where(and(eq(reports.id, report.id), inReach(membership, reports.dossierId)));
+	await enqueue(tx, 'issue-report', { issueId: row.id }, { organisationId });
+	await recordAudit(tx, membership, 'report.issue', report.id, { issue: row.id });
+	return row.id;
 }
 
 /** The signed file of an issued report, for a member. @throws NotFoundError until it is there. */

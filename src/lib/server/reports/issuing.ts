@@ -1,9 +1,13 @@
 import { eq, sql } from 'drizzle-orm';
 import type { ReportModel } from '../../report';
 import { debitExport } from '../billing/ledger';
+import type { Transaction } from '../db';
 import { auditEvents, reports } from '../db/schema';
 import type { ReportIssuing } from '../jobs/handlers/issue-report';
+import type { Issue } from '../jobs/issue-fencing';
 import { PermanentJobError } from '../jobs/job';
+import { writeNotice } from '../notices/write';
+import { approvalOf } from '../reviews/approval';
 import { organisationSigner, rootPem } from '../signing/authority';
 import { signPdf } from '../signing/sign';
 import { verifyReport } from '../verification';
@@ -40,6 +44,22 @@ async function requireGenuine(pdf: Uint8Array, root: string): Promise<void> {
 	}
 }
 
+/** Author, and who sent, read and approved it. */
+async function tellOfIssue(issue: Issue, tx: Transaction): Promise<void> {
+	const [report] = await tx
+		.select({ id: reports.id, revision: reports.revision, createdBy: reports.createdBy })
+		.from(reports)
+		.where(eq(reports.id, issue.reportId));
+	if (report === undefined) return;
+	const approval = await approvalOf(report, tx);
+	await writeNotice(tx, {
+		kind: 'report-issued',
+		organisationId: issue.organisationId,
+		to: [report.createdBy, ...(approval ? [approval.sentBy, approval.decidedBy] : [])],
+		subject: { reportId: report.id, issueId: issue.id }
+	});
+}
+
 export const reportIssuing: ReportIssuing = {
 	render(issue) {
 		const model = issue.model as ReportModel;
@@ -66,6 +86,8 @@ export const reportIssuing: ReportIssuing = {
 		};
 	},
 	async publish(issue, _signed, tx) {
+		// First, because it takes the organisation's row, which comes before the report's everywhere.
+		await debitExport(tx, issue.organisationId, issue.id);
 		await tx
 			.update(reports)
 			.set({ state: 'issued', updatedAt: sql`now()` })
@@ -77,7 +99,6 @@ export const reportIssuing: ReportIssuing = {
 			subject: issue.reportId,
 			detail: { issue: issue.id }
 		});
-		// Last, because it holds the organisation's row until the transaction ends.
-		await debitExport(tx, issue.organisationId, issue.id);
+		await tellOfIssue(issue, tx);
 	}
 };

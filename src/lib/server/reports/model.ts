@@ -1,21 +1,41 @@
-import { and, eq, inArray } from 'drizzle-orm';
+import { and, asc, eq, inArray, isNull } from 'drizzle-orm';
 import { methodById } from '$lib/methods';
-import { buildReportModel, type ReportModel, type ReportSource, type VerificationSource } from '$lib/report';
+import { loadUnits } from '$lib/quantities';
+import {
+	buildReportModel,
+	type ReportModel,
+	type ReportSource,
+	type ReportState,
+	type ReviewerFigureSource,
+	type ReviewSource,
+	type VerificationSource
+} from '$lib/report';
 import { InvalidInputError } from '../access/errors';
 import type { Membership } from '../access/membership';
 import { inReach } from '../access/reach';
 import type { Queryable } from '../db';
-import { evidence, organisations, users } from '../db/schema';
+import { evidence, organisations, reviewerFigures, users } from '../db/schema';
 import { runsOf, type ReportView } from './load';
 import { unprintableText } from './render/printable';
 
-interface Circumstances {
+export interface Circumstances {
 	/** Null in a preview: nothing can be verified yet. */
 	verification: VerificationSource | null;
 	issueDate: Date | null;
 	/** Who authorised the issue. */
 	authoriser: { name: string; role?: string } | null;
+	state: ReportState;
+	review: ReviewSource;
 }
+
+/** Nothing but the report itself: what an author owes a reader, and what an approval covers, is found out with these. */
+export const unissued: Circumstances = {
+	verification: null,
+	issueDate: null,
+	authoriser: null,
+	state: 'draft',
+	review: { kind: 'not-reviewed' }
+};
 
 /** Evidence that the runs name, also where it was put away since: what an issued figure stands on stays listed. */
 async function evidenceOf(membership: Membership, ids: readonly string[], db: Queryable) {
@@ -37,6 +57,28 @@ async function evidenceOf(membership: Membership, ids: readonly string[], db: Qu
 			)
 		)
 		.orderBy(evidence.uploadedAt);
+}
+
+/** Reviewers' own figures of this revision that were not taken back. */
+async function figuresOf(report: ReportView, db: Queryable): Promise<ReviewerFigureSource[]> {
+	const rows = await db
+		.select({ figure: reviewerFigures, name: users.name })
+		.from(reviewerFigures)
+		.leftJoin(users, eq(users.id, reviewerFigures.enteredBy))
+		.where(
+			and(
+				eq(reviewerFigures.reportId, report.id),
+				eq(reviewerFigures.revision, report.revision),
+				isNull(reviewerFigures.withdrawnAt)
+			)
+		)
+		.orderBy(asc(reviewerFigures.enteredAt), asc(reviewerFigures.id));
+	await loadUnits(rows.map(({ figure }) => figure.unit));
+	return rows.map(({ figure, name }) => {
+		const { runId, output, kind, value, unit, giveOrTake, averages, route } = figure;
+		const by = { name: name ?? 'a former reviewer' };
+		return { runId, output, kind, value, unit, giveOrTake, averages, route, by };
+	});
 }
 
 /**
@@ -80,7 +122,7 @@ export async function modelOf(
 		report: {
 			number: report.number,
 			revision: report.revision,
-			state: circumstances.issueDate === null ? report.state : 'issued',
+			state: circumstances.state,
 			title: report.title,
 			text: report.text
 		},
@@ -115,7 +157,8 @@ export async function modelOf(
 			};
 		}),
 		evidence: await evidenceOf(membership, named, db),
-		review: { kind: 'not-reviewed' },
+		review: circumstances.review,
+		reviewerFigures: await figuresOf(report, db),
 		history: [
 			{
 				revision: report.revision,

@@ -7,8 +7,9 @@ import { inReach } from '../access/reach';
 import { database, type Database, type Queryable } from '../db';
 import { previews, reports } from '../db/schema';
 import { enqueue } from '../jobs/queue';
+import { presentReview } from '../reviews/approval';
 import { getReport } from './load';
-import { modelOf, requirePrintable } from './model';
+import { modelOf, requirePrintable, unissued } from './model';
 
 export interface PreviewView {
 	id: string;
@@ -31,7 +32,7 @@ export async function requestPreview(
 	const model = await modelOf(
 		membership,
 		report,
-		{ verification: null, issueDate: null, authoriser: null },
+		{ ...unissued, state: report.state, review: await presentReview(report, db) },
 		db
 	);
 	requirePrintable(model);

@@ -166,6 +166,8 @@ export interface ReviewView {
 	duties: string[];
 	/** Remarks of the present round that are neither settled nor answered: said before a decision, no bar to it. */
 	unanswered: number;
+	/** When the person at the page last had these results computed again, and what came of it; null where never. */
+	recomputed: { at: Date; same: boolean; figures: number } | null;
 	mayDecide: boolean;
 	/** Why not, in plain words; null where `mayDecide`. */
 	whyNot: string | null;
