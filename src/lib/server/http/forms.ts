@@ -20,6 +20,12 @@ export function typedValues(form: FormData, except: readonly string[] = []): Rec
 	return values;
 }
 
+/** A text field as it was typed, with line ends as everywhere else in the service; empty where there is none. */
+export function textOf(form: FormData, name: string): string {
+	const value = form.get(name);
+	return typeof value === 'string' ? value.replace(/\r\n/g, '\n') : '';
+}
+
 /** Reads a form by a schema: its data, or the answer that lists every fault. A field given several times is an array. */
 export function readForm<Schema extends z.ZodType>(
 	form: FormData,
