@@ -17,10 +17,11 @@ const hour = 3600;
 /**
  * Starts an account: nothing counts until the address is confirmed. Whether the address is known already shows only in
  * the mail, which goes to its owner. Signing up again before confirming replaces name and password.
+ * @param input.returnTo path to go on with once the address is confirmed; checked by `safeReturnTo`
  * @throws InvalidInputError for a poor password, TooManyRequestsError, MailNotSentError
  */
 export async function signUp(
-	input: { name: string; email: string; password: string },
+	input: { name: string; email: string; password: string; returnTo?: string },
 	source: string,
 	db: Database = database()
 ): Promise<void> {
@@ -42,11 +43,16 @@ export async function signUp(
 			if (started !== undefined) {
 				await storePassword(tx, started.id, hash);
 				const token = await issueMailToken(tx, started.id, 'confirm-address');
-				return confirmationMail({ name: input.name, email }, token, lifetimeHours['confirm-address']);
+				return confirmationMail(
+					{ name: input.name, email },
+					token,
+					lifetimeHours['confirm-address'],
+					input.returnTo
+				);
 			}
 			const known = await findAccountByEmail(tx, email);
 			// Addressed by the name that the owner gave, not by the one just typed by whoever it was.
-			return alreadyRegisteredMail({ name: known?.name ?? input.name, email });
+			return alreadyRegisteredMail({ name: known?.name ?? input.name, email }, input.returnTo);
 		})
 	);
 	await sendMail(mail);
@@ -59,7 +65,8 @@ export async function signUp(
 export async function resendConfirmation(
 	typedEmail: string,
 	source: string,
-	db: Database = database()
+	db: Database = database(),
+	returnTo = ''
 ): Promise<{ sending: Promise<void> }> {
 	const email = normaliseEmail(typedEmail);
 	await limit(`resend-source:${source}`, 30, hour, db);
@@ -68,7 +75,9 @@ export async function resendConfirmation(
 		const account = await findAccountByEmail(db, email);
 		if (account === null || account.confirmed) return { sending: Promise.resolve() };
 		const token = await issueMailToken(db, account.id, 'confirm-address');
-		return { sending: sendBeside(confirmationMail(account, token, lifetimeHours['confirm-address'])) };
+		return {
+			sending: sendBeside(confirmationMail(account, token, lifetimeHours['confirm-address'], returnTo))
+		};
 	});
 }
 

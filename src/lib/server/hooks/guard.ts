@@ -1,4 +1,5 @@
 import { redirect, type Handle, type RequestEvent } from '@sveltejs/kit';
+import { homeOf } from '../access/home';
 
 /** Pages of a signed-in person that need no organisation yet. */
 const withoutOrganisation = new Set(['/(app)/organisation/new', '/(app)/account']);
@@ -21,7 +22,11 @@ export const guard: Handle = async ({ event, resolve }) => {
 		redirect(303, `/sign-in?returnTo=${encodeURIComponent(back)}${expired}`);
 	}
 	if (locals.membership === null && !withoutOrganisation.has(route.id)) {
-		redirect(303, '/organisation/new');
+		// Somebody who was taken out meanwhile, too: their open pages ask on for a while.
+		if (!isForPage(event)) {
+			return Response.json({ message: 'This does not exist, or you have no access to it.' }, { status: 404 });
+		}
+		redirect(303, homeOf(null));
 	}
 	return resolve(event);
 };

@@ -1,9 +1,11 @@
+import { withReturn } from '../../with-return';
 import { compose, linkTo, type Recipient } from './compose';
 import type { Mail } from './transport';
 
 const notYou = 'If this was not you, do nothing: without the link nothing happens.';
 
-export function confirmationMail(to: Recipient, token: string, hours: number): Mail {
+/** @param returnTo path to go on with once the address is confirmed; empty for none */
+export function confirmationMail(to: Recipient, token: string, hours: number, returnTo = ''): Mail {
 	return compose(
 		to,
 		'Confirm your address for Noonmark',
@@ -12,11 +14,11 @@ export function confirmationMail(to: Recipient, token: string, hours: number): M
 			`The link works once and for ${hours} hours. You will be asked for the password that you chose.`,
 			notYou
 		],
-		{ label: 'Confirm this address', href: linkTo(`/confirm/${token}`) }
+		{ label: 'Confirm this address', href: linkTo(withReturn(`/confirm/${token}`, returnTo)) }
 	);
 }
 
-export function alreadyRegisteredMail(to: Recipient): Mail {
+export function alreadyRegisteredMail(to: Recipient, returnTo = ''): Mail {
 	return compose(
 		to,
 		'You already have a Noonmark account',
@@ -25,7 +27,7 @@ export function alreadyRegisteredMail(to: Recipient): Mail {
 			`If you do not know your password any more, choose a new one: ${linkTo('/reset')}`,
 			'If this was not you, do nothing: your account is as it was.'
 		],
-		{ label: 'Sign in', href: linkTo('/sign-in') }
+		{ label: 'Sign in', href: linkTo(withReturn('/sign-in', returnTo)) }
 	);
 }
 

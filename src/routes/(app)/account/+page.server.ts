@@ -16,8 +16,9 @@ function signedIn(locals: App.Locals): Person {
 	return locals.person;
 }
 
-export const load: PageServerLoad = async ({ locals }) => ({
-	sessions: await listSessions(signedIn(locals), locals.sessionId)
+export const load: PageServerLoad = async ({ locals, url }) => ({
+	sessions: await listSessions(signedIn(locals), locals.sessionId),
+	hasLeft: url.searchParams.get('notice') === 'left'
 });
 
 const none: Record<string, string> = {};
@@ -76,10 +77,6 @@ export const actions: Actions = {
 		const work = leaveOrganisation(person, read.data.organisationId);
 		const done = await orFormFault(event, work, typedValues(form));
 		if ('fault' in done) return done.fault;
-		return {
-			errors: none,
-			values: none,
-			done: 'You have left the organisation. What you wrote there stays.'
-		};
+		redirect(303, '/account?notice=left#organisations');
 	}
 };

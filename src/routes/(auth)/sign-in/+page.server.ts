@@ -1,13 +1,12 @@
 import { redirect } from '@sveltejs/kit';
 import { signInSchema } from '$lib/schemas/accounts';
+import { homeOf } from '$lib/server/access/home';
 import { signIn } from '$lib/server/accounts/auth';
 import { rememberAddress } from '$lib/server/accounts/pending-address';
 import { UnconfirmedAddressError } from '$lib/server/accounts/sign-in';
 import { orFormFault, readForm, typedValues } from '$lib/server/http/forms';
 import { safeReturnTo } from '$lib/server/http/return-to';
 import type { Actions, PageServerLoad } from './$types';
-
-const home = '/dossiers';
 
 const notices: Readonly<Record<string, { lead: string; text: string }>> = {
 	expired: { lead: 'Your session has ended.', text: 'Sign in again to go on.' },
@@ -17,8 +16,8 @@ const notices: Readonly<Record<string, { lead: string; text: string }>> = {
 };
 
 export const load: PageServerLoad = ({ locals, url }) => {
-	const returnTo = safeReturnTo(url.searchParams.get('returnTo'), home);
-	if (locals.person !== null) redirect(303, returnTo);
+	const returnTo = safeReturnTo(url.searchParams.get('returnTo'), '');
+	if (locals.person !== null) redirect(303, returnTo || homeOf(locals.membership));
 	return { returnTo, notice: notices[url.searchParams.get('notice') ?? ''] };
 };
 
@@ -34,6 +33,7 @@ export const actions: Actions = {
 		});
 		const done = await orFormFault(event, work, values);
 		if ('fault' in done) return done.fault;
-		redirect(303, safeReturnTo(values.returnTo, home));
+		// Where a person starts is known once they are signed in: this page then leads on.
+		redirect(303, safeReturnTo(values.returnTo, '/sign-in'));
 	}
 };

@@ -82,6 +82,17 @@ export async function openInvitation(token: string, db: Database = database()): 
 	return find(db, token);
 }
 
+/** Whether a person's account has the address that an invitation went to. */
+export function isAddressee(invitation: Pick<Invitation, 'email'>, person: Pick<Person, 'email'>): boolean {
+	return normaliseEmail(person.email) === invitation.email;
+}
+
+/** An address that its owner knows again and a stranger cannot write to: "r…@company.example". */
+export function maskedAddress(email: string): string {
+	const at = email.lastIndexOf('@');
+	return `${[...email][0] ?? ''}…${email.slice(at)}`;
+}
+
 /** Why an invitation that is not open cannot be accepted, and what to do. */
 export const whyNot: Readonly<Record<Exclude<InvitationState, 'open'>, string>> = {
 	expired: 'This invitation is too old. Ask for it to be sent again.',
@@ -156,7 +167,7 @@ export async function acceptInvitation(
 			.for('update');
 		const invitation = await find(tx, token);
 		const account = await findAccountById(tx, person.id);
-		if (account?.confirmed !== true || normaliseEmail(account.email) !== invitation.email) {
+		if (account?.confirmed !== true || !isAddressee(invitation, account)) {
 			throw new ForbiddenError('This invitation went to another address than that of your account.');
 		}
 		const { organisationName, kind, dossier, state } = invitation;

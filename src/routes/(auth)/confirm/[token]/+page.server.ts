@@ -4,6 +4,8 @@ import { sourceOf } from '$lib/server/access/limit';
 import { signIn } from '$lib/server/accounts/auth';
 import { confirmAddress, findConfirmation } from '$lib/server/accounts/sign-up';
 import { orFormFault, readForm } from '$lib/server/http/forms';
+import { safeReturnTo } from '$lib/server/http/return-to';
+import { withReturn } from '$lib/with-return';
 import type { Actions, PageServerLoad } from './$types';
 
 export const load: PageServerLoad = async ({ params }) => ({ waiting: await findConfirmation(params.token) });
@@ -18,6 +20,9 @@ export const actions: Actions = {
 		const done = await orFormFault(event, work);
 		if ('fault' in done) return done.fault;
 		const signedIn = await orFormFault(event, signIn(event, { email: done.data.email, password }));
-		redirect(303, 'fault' in signedIn ? '/sign-in?notice=confirmed' : '/dossiers');
+		const returnTo = safeReturnTo(event.url.searchParams.get('returnTo'), '');
+		if ('fault' in signedIn) redirect(303, withReturn('/sign-in?notice=confirmed', returnTo));
+		// Without a place to go back to, the sign-in page leads a signed-in person home.
+		redirect(303, returnTo || '/sign-in');
 	}
 };
