@@ -93,7 +93,8 @@ const actions: { [route: string]: (control: Control, body: Body) => unknown } = 
 				mode: oneOf(body, 'mode', ['normal', 'hold', 'drop']),
 				order: oneOf(body, 'order', orders),
 				duplicates: number(body, 'duplicates'),
-				delayMilliseconds: number(body, 'delayMilliseconds')
+				delayMilliseconds: number(body, 'delayMilliseconds'),
+				atOnce: number(body, 'atOnce')
 			})
 		),
 	'POST release': (control, body) => ({ released: control.release(oneOf(body, 'order', orders)) }),

@@ -24,13 +24,16 @@ export type Behaviour = {
 	/** How many more times each event is sent. */
 	duplicates: number;
 	delayMilliseconds: number;
+	/** How many are sent at the same time; with 1 they arrive in the order in which they are sent. */
+	atOnce: number;
 };
 
 export const usualBehaviour = (): Behaviour => ({
 	mode: 'normal',
 	order: 'as made',
 	duplicates: 0,
-	delayMilliseconds: 0
+	delayMilliseconds: 0,
+	atOnce: 4
 });
 
 export type Redelivery = {
@@ -40,8 +43,6 @@ export type Redelivery = {
 	/** Sent in place of the event's own body, under the signature of the own body. */
 	body?: string;
 };
-
-const mostAtOnce = 4;
 
 function arranged(deliveries: Delivery[], order: Behaviour['order']): Delivery[] {
 	if (order === 'reversed') return [...deliveries].reverse();
@@ -168,7 +169,7 @@ export class Deliverer {
 	}
 
 	private pump(): void {
-		while (!this.stopped && this.running < mostAtOnce) {
+		while (!this.stopped && this.running < this.behaviour.atOnce) {
 			const delivery = this.ready.shift();
 			if (delivery === undefined) break;
 			this.running += 1;
