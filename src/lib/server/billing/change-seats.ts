@@ -12,8 +12,8 @@ import { livingSubscription } from './checkout';
 import { withCustomer } from './customers';
 import { planById, planForSeats, plans, seatLookupKey, type Interval, type Plan } from './plans';
 import { requireSeats } from './purchase';
-import { lockOrganisation, standingOf, type Subscription } from './standing';
-import { stripe } from './stripe';
+import { databaseTime, lockOrganisation, standingOf, type Subscription } from './standing';
+import { orAway, stripe } from './stripe';
 import { syncSubscription } from './sync';
 
 /* The number of seats of a living subscription. The plan follows from it: see plans.json. */
@@ -57,7 +57,7 @@ async function planChange(organisationId: string, seats: number, db: Database): 
 	}
 	const taken = await db.$count(memberships, eq(memberships.organisationId, organisationId));
 	requireSeats(after, seats, taken, plans());
-	const price = await priceOf(stripe(), seatLookupKey(after, subscription.interval), plans());
+	const price = await orAway(priceOf(stripe(), seatLookupKey(after, subscription.interval), plans()));
 	return {
 		subscription,
 		before: planById(subscription.planId),
@@ -98,16 +98,26 @@ export async function previewSeats(
 		db
 	);
 	await limit(`seats-preview:${membership.organisationId}`, 60, 3600, db);
-	const invoice = await stripe().invoices.createPreview({
-		customer: subscription.customerId,
-		subscription: subscription.id,
-		subscription_details: { items, proration_behavior: proration }
-	});
+	const changedAt = Math.floor((await databaseTime(db)).getTime() / 1000);
+	const invoice = await orAway(
+		stripe().invoices.createPreview({
+			customer: subscription.customerId,
+			subscription: subscription.id,
+			subscription_details: {
+				items,
+				proration_behavior: proration,
+				...(proration === 'none' ? {} : { proration_date: changedAt })
+			}
+		})
+	);
+	// Earlier changes wait for the same invoice; this one's lines begin at its own instant.
+	const ofThis = (line: Stripe.InvoiceLineItem) =>
+		proration !== 'none' && isProration(line) && line.period.start === changedAt;
 	return {
 		from: { seats: subscription.quantity, plan: before?.name ?? 'unknown' },
 		to: { seats, plan: after.name },
 		interval,
-		now: invoice.lines.data.filter(isProration).reduce((sum, { amount }) => sum + amount, 0),
+		now: invoice.lines.data.filter(ofThis).reduce((sum, { amount }) => sum + amount, 0),
 		next: invoice.total,
 		nextAt: subscription.periodEnd,
 		each: after.seatPrice[interval] * seats,
@@ -133,7 +143,7 @@ export async function changeSeats(
 	if ((await livingSubscription(organisationId, db))?.quantity === seats) return;
 	const { subscription, after, items, proration } = await planChange(organisationId, seats, db);
 	await limit(`seats:${organisationId}`, 20, 3600, db);
-	await withCustomer(db, subscription.customerId, async (tx) => {
+	const change = withCustomer(db, subscription.customerId, async (tx) => {
 		// Whoever takes a seat holds the same row: nobody comes in between the count and the change.
 		await lockOrganisation(tx, organisationId);
 		const taken = await tx.$count(memberships, eq(memberships.organisationId, organisationId));
@@ -150,4 +160,5 @@ export async function changeSeats(
 			plan: after.id
 		});
 	});
+	await orAway(change);
 }

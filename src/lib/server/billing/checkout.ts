@@ -17,7 +17,7 @@ import { planById, plans } from './plans';
 import { quote, readPurchase, type Purchase, type PurchaseInput } from './purchase';
 import { seatsOf } from './seats';
 import { lockOrganisation, standingOf } from './standing';
-import { stripe } from './stripe';
+import { orAway, stripe } from './stripe';
 
 type Checkout = typeof checkouts.$inferSelect;
 
@@ -71,8 +71,7 @@ async function sessionOf(row: Checkout, db: Database): Promise<Stripe.Checkout.S
 			: {
 					...common,
 					mode: 'payment',
-					payment_intent_data: { metadata },
-					invoice_creation: { enabled: true, invoice_data: { metadata } }
+					payment_intent_data: { metadata }
 				},
 		{ idempotencyKey: `checkout:${row.id}` }
 	);
@@ -135,7 +134,7 @@ async function rowFor(
 /**
  * Starts a purchase.
  * @returns the address of the payment service's page where it is paid
- * @throws InvalidInputError for seats that do not fit, ConflictError where there is a plan already
+ * @throws InvalidInputError for seats that do not fit, ConflictError where there is a plan already, PaymentsAwayError
  */
 export async function startCheckout(
 	membership: Membership | null,
@@ -146,6 +145,10 @@ export async function startCheckout(
 	const { taken } = await seatsOf(membership.organisationId, db);
 	const wanted = readPurchase(input, taken, plans());
 	await limit(`checkout:${membership.organisationId}`, 30, 3600, db);
+	return orAway(leadToPayment(membership, wanted, db));
+}
+
+async function leadToPayment(membership: Membership, wanted: Purchase, db: Database): Promise<string> {
 	for (let tries = 0; tries < 4; tries++) {
 		const { row, isOther } = await rowFor(membership, wanted, db);
 		let session: Stripe.Checkout.Session;
@@ -153,8 +156,12 @@ export async function startCheckout(
 			session = await sessionOf(row, db);
 		} catch (cause) {
 			// Its price was replaced since it was begun: a new purchase takes the new one.
-			if (!(cause instanceof Stripe.errors.StripeIdempotencyError)) throw cause;
-			await end(row, 'failed', db);
+			const isStale = cause instanceof Stripe.errors.StripeIdempotencyError;
+			// An answer of theirs that says no more is kept under the key and would come again for a day; without an
+			// answer the key stays, since the session may be there.
+			const isSpoilt = cause instanceof Stripe.errors.StripeAPIError && (cause.statusCode ?? 0) >= 500;
+			if (isStale || isSpoilt) await end(row, 'failed', db);
+			if (!isStale) throw cause;
 			continue;
 		}
 		if (session.status === 'complete') {

@@ -59,6 +59,12 @@ async function grantMonth(organisationId: string, standing: PlanStanding, tx: Tr
 		.onConflictDoNothing();
 }
 
+/** Enters the running month's exports as soon as its seats are known, so that fewer seats later take none away. */
+export async function enterMonth(tx: Transaction, organisationId: string): Promise<void> {
+	await lockOrganisation(tx, organisationId);
+	await grantMonth(organisationId, await standingOf(organisationId, tx), tx);
+}
+
 /** Exports left, with where they come from. Writes nothing: a month's exports count before they are entered. */
 export async function exportsLeft(organisationId: string, db: Queryable = database()): Promise<ExportsLeft> {
 	const standing = await standingOf(organisationId, db);

@@ -7,7 +7,7 @@ import { database, type Database } from '../db';
 import { env } from '../env';
 import { customerOf } from './customers';
 import { requirePaymentPage } from './payment-page';
-import { stripe } from './stripe';
+import { orAway, stripe } from './stripe';
 
 /**
  * The payment service's page for card, address, invoices and cancellation. Its address is a key by itself: it goes to
@@ -21,10 +21,9 @@ export async function openPortal(membership: Membership | null, db: Database = d
 		throw new ConflictError('There is nothing to manage yet: nothing has been bought.');
 	}
 	await limit(`portal:${membership.organisationId}`, 30, 3600, db);
-	const session = await stripe().billingPortal.sessions.create({
-		customer,
-		return_url: `${env().ORIGIN}/billing`
-	});
+	const session = await orAway(
+		stripe().billingPortal.sessions.create({ customer, return_url: `${env().ORIGIN}/billing` })
+	);
 	await recordAudit(db, membership, 'billing.portal', null);
 	return requirePaymentPage(session.url);
 }

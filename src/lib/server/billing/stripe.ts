@@ -1,5 +1,6 @@
 import Stripe from 'stripe';
 import { env } from '../env';
+import { PaymentsAwayError } from './errors';
 
 /** The one version that requests, the webhook's endpoint and this code agree on. */
 export const apiVersion = '2026-10-28.endive';
@@ -48,10 +49,20 @@ export function isMissing(cause: unknown): boolean {
 }
 
 /** Whether the payment service was not reached or is not well: trying again may help. */
-export function isAway(cause: unknown): boolean {
+function isAway(cause: unknown): boolean {
 	return (
 		cause instanceof Stripe.errors.StripeConnectionError ||
 		cause instanceof Stripe.errors.StripeAPIError ||
 		cause instanceof Stripe.errors.StripeRateLimitError
 	);
+}
+
+/** Awaits what a person asked of the payment service. @throws PaymentsAwayError where trying again may help */
+export async function orAway<T>(work: Promise<T>): Promise<T> {
+	try {
+		return await work;
+	} catch (cause) {
+		if (isAway(cause)) throw new PaymentsAwayError({ cause });
+		throw cause;
+	}
 }

@@ -5,6 +5,7 @@ import { auditEvents, invoices, subscriptions } from '../db/schema';
 import { log } from '../log';
 import { invoiceRow, subscriptionOfInvoice, subscriptionRow, type SubscriptionRow } from './copies';
 import { terminalStatuses } from './entitlement';
+import { enterMonth } from './ledger';
 import { plans } from './plans';
 import { idOf, isMissing, stripe } from './stripe';
 
@@ -78,7 +79,10 @@ export async function syncSubscription(
 	const all = await Promise.all(page.data.map(withAllLines));
 	for (const invoice of all) await keepInvoice(tx, organisationId, invoice);
 	const row = subscriptionRow(organisationId, fetched, all, plans());
-	return row === null ? false : keepSubscription(tx, row);
+	if (row === null) return false;
+	const changed = await keepSubscription(tx, row);
+	await enterMonth(tx, organisationId);
+	return changed;
 }
 
 export async function syncInvoice(

@@ -1,6 +1,7 @@
 import { error, fail, type ActionFailure } from '@sveltejs/kit';
 import type { z } from 'zod';
 import { InvalidInputError, TooManyRequestsError } from '../access/errors';
+import { PaymentsAwayError } from '../billing/errors';
 import { MailNotSentError } from '../mail/transport';
 import { statusOf } from './errors';
 import { noteRefusal } from './refusals';
@@ -60,7 +61,7 @@ export async function orFormFault<T>(
 	try {
 		return { data: await work };
 	} catch (cause) {
-		if (cause instanceof MailNotSentError) {
+		if (cause instanceof MailNotSentError || cause instanceof PaymentsAwayError) {
 			return { fault: fail(503, { errors: { form: cause.message }, values }) };
 		}
 		const status = statusOf(cause);
