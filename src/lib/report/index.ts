@@ -5,7 +5,14 @@ export { unmetDuties, type Duty } from './duties';
 export { equationNumbers, equationRows } from './equations';
 export { figureRows, temperatureTeller } from './figures';
 export * from './model';
-export { changedPlaces, compareLines, reportLines, type ComparedLine, type ReportLine } from './lines';
+export {
+	changedPlaces,
+	compareLines,
+	reportLines,
+	wholeLine,
+	type ComparedLine,
+	type ReportLine
+} from './lines';
 export { averagesOf, comparisonSentence, figureNumbers, figureText, personText } from './reviewer-figure';
 export type * from './source';
 export { emptyReportText, type ReportText } from './text';

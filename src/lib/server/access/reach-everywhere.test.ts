@@ -13,7 +13,15 @@ const server = fileURLToPath(new URL('..', import.meta.url));
 const folders = ['dossiers', 'calculations', 'evidence', 'reports', 'reviews', 'sharing', 'figures'];
 
 /** Each narrows by reach itself: see guest-reach.db.test.ts. */
-const loaders = ['findDossier', 'getCalculation', 'getVersion', 'getRun', 'getReport', 'runsOf'];
+const loaders = [
+	'findDossier',
+	'getCalculation',
+	'getVersion',
+	'getRun',
+	'getReport',
+	'runsOf',
+	'findComment'
+];
 
 /** `file function`, and why it need not. */
 const exceptions: Readonly<Record<string, string>> = {

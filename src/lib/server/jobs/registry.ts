@@ -5,7 +5,7 @@ import { issueReportJob, type ReportIssuing } from './handlers/issue-report';
 import { purgeDeletedJob } from './handlers/purge-deleted';
 import { renderPreviewJob, type PreviewRendering } from './handlers/render-preview';
 import { sendNoticeJob } from './handlers/send-notice';
-import type { JobDefinition, JobDefinitions } from './job';
+import type { JobDefinitions } from './job';
 
 /** What the jobs need from the process that runs them. */
 export interface JobParts {
@@ -13,12 +13,6 @@ export interface JobParts {
 	issuing: ReportIssuing;
 	preview: PreviewRendering;
 }
-
-/** Nothing asks for these yet. */
-const unasked = {
-	handle: () => Promise.reject(new Error('There is no such job yet.')),
-	abandon: () => Promise.resolve()
-} satisfies JobDefinition;
 
 /** The definition of every job. */
 export function jobDefinitions({ compute, issuing, preview }: JobParts): JobDefinitions {

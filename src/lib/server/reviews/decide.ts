@@ -4,6 +4,7 @@ import { recordAudit } from '../access/audit';
 import { requireAction } from '../access/can';
 import { ConflictError, ForbiddenError, InvalidInputError } from '../access/errors';
 import type { Membership } from '../access/membership';
+import { inReach } from '../access/reach';
 import { database, type Database, type Transaction } from '../db';
 import { reports, reviews } from '../db/schema';
 import { writeNotice } from '../notices/write';
@@ -74,7 +75,7 @@ async function decide(
 	const [saved] = await tx
 		.update(reports)
 		.set({ state: given.state, updatedAt: sql`now()` })
-		.where(eq(reports.id, report.id))
+		.where(and(eq(reports.id, report.id), inReach(membership, reports.dossierId)))
 		.returning({ writers: reports.writers });
 	const approved = given.state === 'approved';
 	await recordAudit(tx, membership, approved ? 'report.approve' : 'report.return', report.id, {
