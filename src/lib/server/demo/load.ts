@@ -1,79 +1,27 @@
 import { eq } from 'drizzle-orm';
-import type { Membership, MemberRole } from '../access/membership';
+import type { Membership, Role } from '../access/membership';
 import { hashPassword } from '../accounts/passwords';
 import { createConfirmedAccount, findAccountByEmail, storePassword } from '../accounts/people';
 import type { Person } from '../accounts/person';
 import type { Database } from '../db';
 import { users } from '../db/schema';
 import { createOrganisation } from '../organisations/create';
-import { addMember, listMembers } from '../organisations/members';
+import { listMembers } from '../organisations/members';
 import { membershipsOf } from '../organisations/memberships';
+import { enrolForSetUp } from '../organisations/set-up';
+import { demoGuests, demoOrganisations } from './content/organisations';
+import { ensureInvitation, ensurePlan } from './standing';
 import { loadDemoWork } from './work';
 
 /** Marks the demo's people: nobody else's account is ever touched. */
 const demoMark = 'noonmark-demo';
-
-interface DemoPerson {
-	name: string;
-	email: string;
-	roles: readonly MemberRole[];
-}
-
-interface DemoOrganisation {
-	name: string;
-	address: string[];
-	numberPrefix: string;
-	/** The first founds it. */
-	people: readonly [DemoPerson, ...DemoPerson[]];
-}
-
-/** All invented. */
-const demoOrganisations: readonly DemoOrganisation[] = [
-	{
-		name: 'Tallis Brook Consulting',
-		address: ['14 Weir Lane', 'Tallis Brook', 'Marrow Coast'],
-		numberPrefix: 'TB',
-		people: [
-			{
-				name: 'Ines Tarrow',
-				email: 'ines.tarrow@tallisbrook.example',
-				roles: ['owner', 'author', 'reviewer', 'billing']
-			},
-			{ name: 'Colm Hadley', email: 'colm.hadley@tallisbrook.example', roles: ['reviewer', 'reader'] }
-		]
-	},
-	{
-		name: 'The Ferrow Courier',
-		address: ['2 Printers’ Yard', 'Ferrow'],
-		numberPrefix: 'FC',
-		people: [
-			{
-				name: 'Oda Merrick',
-				email: 'oda.merrick@ferrowcourier.example',
-				roles: ['owner', 'author', 'reviewer', 'billing']
-			}
-		]
-	},
-	{
-		name: 'Idris Venn',
-		address: ['9 Harbour Steps', 'Marrow Coast'],
-		numberPrefix: 'IV',
-		people: [
-			{
-				name: 'Idris Venn',
-				email: 'idris.venn@venn.example',
-				roles: ['owner', 'author', 'reviewer', 'billing']
-			}
-		]
-	}
-];
 
 export interface DemoSignIn {
 	name: string;
 	email: string;
 	password: string;
 	organisation: string;
-	roles: readonly MemberRole[];
+	roles: readonly Role[];
 }
 
 export interface LoadedDemo {
@@ -84,7 +32,11 @@ export interface LoadedDemo {
 }
 
 /** @throws Error if the address belongs to somebody who is not of the demo */
-async function ensurePerson(db: Database, person: DemoPerson, password: string): Promise<Person> {
+async function ensurePerson(
+	db: Database,
+	person: { name: string; email: string },
+	password: string
+): Promise<Person> {
 	const account = await findAccountByEmail(db, person.email);
 	if (account === null) {
 		const id = await createConfirmedAccount(db, { ...person, password, demo: demoMark });
@@ -105,10 +57,16 @@ async function ensurePerson(db: Database, person: DemoPerson, password: string):
  */
 export async function loadDemo(db: Database, password: string): Promise<LoadedDemo> {
 	const loaded: LoadedDemo = { signIns: [], memberships: {} };
+	const people = new Map<string, Person>();
+	const ensure = async (person: { name: string; email: string }): Promise<Person> => {
+		const found = await ensurePerson(db, person, password);
+		people.set(person.email, found);
+		return found;
+	};
 	const colleagues: DemoSignIn[] = [];
-	for (const { people, ...organisation } of demoOrganisations) {
-		const [founder, ...others] = people;
-		const person = await ensurePerson(db, founder, password);
+	for (const { people: listed, plan, invited, ...organisation } of demoOrganisations) {
+		const [founder, ...others] = listed;
+		const person = await ensure(founder);
 		const own = await membershipsOf(person, db);
 		const membership =
 			own.find((one) => one.organisationName === organisation.name) ??
@@ -117,12 +75,18 @@ export async function loadDemo(db: Database, password: string): Promise<LoadedDe
 		loaded.signIns.push({ ...founder, password, organisation: organisation.name });
 		const members = await listMembers(membership, db);
 		for (const other of others) {
-			const colleague = await ensurePerson(db, other, password);
-			if (!members.some(({ userId }) => userId === colleague.id)) await addMember(membership, other, db);
+			const colleague = await ensure(other);
+			if (!members.some(({ userId }) => userId === colleague.id)) await enrolForSetUp(membership, other, db);
 			colleagues.push({ ...other, password, organisation: organisation.name });
 		}
+		if (plan !== undefined) await ensurePlan(membership, plan, db);
+		if (invited !== undefined) await ensureInvitation(membership, invited, db);
+	}
+	for (const guest of demoGuests) {
+		await ensure(guest);
+		colleagues.push({ ...guest, password, organisation: 'Idris Venn', roles: ['guest'] });
 	}
 	loaded.signIns.push(...colleagues);
-	await loadDemoWork(loaded.memberships, db);
+	await loadDemoWork(loaded.memberships, people, db);
 	return loaded;
 }

@@ -12,7 +12,8 @@ import { createDossier } from '../dossiers/create';
 import { createReport, saveReport } from '../reports/change';
 import { issueReport } from '../reports/issue';
 import { getReport } from '../reports/load';
-import { demoWork, type DemoCalculation, type DemoDossier } from './content';
+import { demoWork, type DemoCalculation, type DemoDossier, type DemoReport } from './content';
+import { review, type DemoPeople } from './review';
 
 function filledIn(empty: CalculationDraft, given: DemoCalculation): CalculationDraft {
 	const method = methodById(given.method);
@@ -54,44 +55,68 @@ async function calculate(
 	return given.unfinished === true ? null : startRun(membership, id, db);
 }
 
-async function load(membership: Membership, given: DemoDossier, db: Database): Promise<void> {
-	const dossierId = await createDossier(membership, given.dossier, db);
-	const runs: string[] = [];
-	for (const calculation of given.calculations) {
-		const run = await calculate(membership, dossierId, calculation, db);
-		if (run !== null) runs.push(run);
-	}
-	const [first] = runs;
-	if (given.memo === undefined || first === undefined) return;
-	const { title, background, commentary, leftOut, issue } = given.memo;
+async function report(
+	membership: Membership,
+	dossierId: string,
+	given: DemoReport,
+	runs: ReadonlyMap<string, string>,
+	people: DemoPeople,
+	db: Database
+): Promise<void> {
+	const shown = given.on.map((title) => {
+		const run = runs.get(title);
+		if (run === undefined) throw new Error(`The demo reports a calculation that is not there: ${title}.`);
+		return run;
+	});
+	const [first] = shown;
+	if (first === undefined) throw new Error(`The demo's report has no result: ${given.title}.`);
 	const id = await createReport(membership, dossierId, { template: 'client-memo', runId: first }, db);
-	const { text, runIds, version } = await getReport(membership, id, db);
+	const { text, version } = await getReport(membership, id, db);
+	const { title, background, commentary, leftOut } = given;
 	await saveReport(
 		membership,
 		id,
-		{ title, text: { ...text, background, commentary, leftOut }, runIds, baseVersion: version },
+		{ title, text: { ...text, background, commentary, leftOut }, runIds: shown, baseVersion: version },
 		db
 	);
-	if (issue) await issueReport(membership, id, db);
+	if (given.review !== undefined) await review(membership, id, given.review, people, db);
+	if (given.issue === true) await issueReport(membership, id, db);
+}
+
+async function load(
+	membership: Membership,
+	given: DemoDossier,
+	people: DemoPeople,
+	db: Database
+): Promise<void> {
+	const dossierId = await createDossier(membership, given.dossier, db);
+	const runs = new Map<string, string>();
+	for (const calculation of given.calculations) {
+		const run = await calculate(membership, dossierId, calculation, db);
+		if (run !== null) runs.set(calculation.title, run);
+	}
+	for (const one of given.reports ?? []) await report(membership, dossierId, one, runs, people, db);
 }
 
 /**
- * Gives each organisation of the demo its work, once. An organisation that has a dossier, be it a deleted one, is
- * left alone. The issue of a memo waits in the queue for a worker.
+ * Gives each organisation of the demo its work, each dossier once: one whose title is there, be it deleted, is left
+ * alone. The issue of a memo waits in the queue for a worker.
  */
 export async function loadDemoWork(
 	memberships: Readonly<Record<string, Membership>>,
+	people: DemoPeople,
 	db: Database
 ): Promise<void> {
 	for (const [name, work] of Object.entries(demoWork)) {
 		const membership = memberships[name];
 		if (membership === undefined) continue;
-		const [any] = await db
-			.select({ id: dossiers.id })
+		const present = await db
+			.select({ title: dossiers.title })
 			.from(dossiers)
-			.where(eq(dossiers.organisationId, membership.organisationId))
-			.limit(1);
-		if (any !== undefined) continue;
-		for (const dossier of work) await load(membership, dossier, db);
+			.where(eq(dossiers.organisationId, membership.organisationId));
+		const titles = new Set(present.map(({ title }) => title));
+		for (const one of work) {
+			if (!titles.has(one.dossier.title)) await load(membership, one, people, db);
+		}
 	}
 }
