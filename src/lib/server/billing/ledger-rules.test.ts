@@ -32,19 +32,21 @@ describe('spendable', () => {
 	const pack = grant({ id: 'late' });
 	const soon = grant({ id: 'soon', validUntil: new Date(now.getTime() + day) });
 	const trial = grant({ id: 'trial', kind: 'trial', key: 'trial:u', validUntil: null });
-	const month = grant({ id: 'month', kind: 'month', key: 'month:sub_1:x:16' });
+	const month = grant({ id: 'month', kind: 'month', key: 'month:sub_1:2027-02-28T09:00:00.000Z:16' });
 	const ids = (all: GrantFacts[], given: Allowance) => spendable(all, given, now).map(({ id }) => id);
 
 	it('uses the month first, then the trial, then the pack that ends first', () => {
 		expect(ids([pack, trial, soon, month], allowance())).toEqual(['month', 'trial', 'soon', 'late']);
 	});
 
-	it('leaves out what is used up, over, not begun, or of another subscription', () => {
+	it('leaves out what is used up, over, not begun, of another subscription or of another month', () => {
 		const empty = grant({ id: 'empty', left: 0 });
 		const over = grant({ id: 'over', validUntil: now });
 		const early = grant({ id: 'early', validFrom: new Date(now.getTime() + 1) });
-		const foreign = grant({ id: 'foreign', kind: 'month', key: 'month:sub_10:x:16' });
-		expect(ids([empty, over, early, foreign, pack], allowance())).toEqual(['late']);
+		const other = { kind: 'month' as const, validUntil: new Date(now.getTime() + day) };
+		const foreign = grant({ ...other, id: 'foreign', key: 'month:sub_10:2027-02-28T09:00:00.000Z:16' });
+		const former = grant({ ...other, id: 'former', key: 'month:sub_1:2027-02-20T09:00:00.000Z:16' });
+		expect(ids([empty, over, early, foreign, former, pack], allowance())).toEqual(['late']);
 	});
 
 	it('keeps packs usable without a plan, and nothing while something is owed', () => {

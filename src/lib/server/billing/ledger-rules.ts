@@ -25,19 +25,26 @@ export interface Allowance {
 
 const order: Readonly<Record<GrantKind, number>> = { month: 0, trial: 1, pack: 2 };
 
-const monthPrefix = (subscriptionId: string) => `month:${subscriptionId}:`;
+/** The running month of a subscription, and how the keys of its grants begin. */
+function runningMonth({ id, anchor }: NonNullable<Allowance['subscription']>, now: Date) {
+	const window = monthAround(anchor, now);
+	return { window, prefix: `month:${id}:${window.start.toISOString()}:` };
+}
 
-/** The grants that an export may be taken from now, in the order in which they are: what runs out goes first. */
+/**
+ * The grants that an export may be taken from now, in the order in which they are: what runs out goes first. Of months
+ * only the running one counts: where a change of plan begins another, what was left of the former goes with it.
+ */
 export function spendable<G extends GrantFacts>(grants: readonly G[], allowance: Allowance, now: Date): G[] {
 	if (allowance.blocked) return [];
-	const { subscription } = allowance;
+	const month = allowance.subscription === null ? null : runningMonth(allowance.subscription, now);
 	return grants
 		.filter(
 			({ kind, key, left, validFrom, validUntil }) =>
 				left > 0 &&
 				validFrom <= now &&
 				(validUntil === null || now < validUntil) &&
-				(kind !== 'month' || (subscription !== null && key.startsWith(monthPrefix(subscription.id))))
+				(kind !== 'month' || (month !== null && key.startsWith(month.prefix)))
 		)
 		.sort(
 			(a, b) =>
@@ -65,13 +72,12 @@ export function missingMonth(
 ): MonthGrant | undefined {
 	const { subscription } = allowance;
 	if (subscription === null) return undefined;
-	const window = monthAround(subscription.anchor, now);
-	const start = `${monthPrefix(subscription.id)}${window.start.toISOString()}:`;
+	const { window, prefix } = runningMonth(subscription, now);
 	const given = grants
-		.filter(({ kind, key }) => kind === 'month' && key.startsWith(start))
+		.filter(({ kind, key }) => kind === 'month' && key.startsWith(prefix))
 		.reduce((sum, { amount }) => sum + amount, 0);
 	const total = subscription.quantity * subscription.plan.exportsPerSeat;
-	return total > given ? { key: `${start}${total}`, amount: total - given, window } : undefined;
+	return total > given ? { key: `${prefix}${total}`, amount: total - given, window } : undefined;
 }
 
 /**
