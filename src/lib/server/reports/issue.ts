@@ -24,6 +24,8 @@ export interface IssueView {
 	id: string;
 	state: 'queued' | 'rendering' | 'signing' | 'done' | 'failed';
 	problem: string | null;
+	/** `no-exports` is mended by paying, anything else by trying again; null where nothing failed. */
+	problemKind: 'no-exports' | 'fault' | null;
 	code: string;
 	sha256: string | null;
 	size: number | null;
@@ -37,6 +39,7 @@ const columns = {
 	id: issues.id,
 	state: issues.state,
 	problem: issues.problem,
+	problemKind: issues.problemKind,
 	code: issues.code,
 	sha256: issues.sha256,
 	size: issues.size,

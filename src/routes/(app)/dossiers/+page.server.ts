@@ -6,20 +6,23 @@ import { deletedDossierTitle, restoreDossier } from '$lib/server/dossiers/delete
 import { listDossiers } from '$lib/server/dossiers/list';
 import { orHttpError } from '$lib/server/http/errors';
 import { idIn } from '$lib/server/http/ids';
+import { waitingForMe } from '$lib/server/reviews/waiting';
 import type { Actions, PageServerLoad } from './$types';
 
 export const load: PageServerLoad = async ({ locals, url }) => {
 	const query = readListQuery(url.searchParams, dossierList);
 	const deleted = idIn(url.searchParams, 'deleted');
-	const [listed, deletedTitle] = await orHttpError(
+	const [listed, deletedTitle, waiting] = await orHttpError(
 		Promise.all([
 			listDossiers(locals.membership, query),
-			deleted === undefined ? undefined : deletedDossierTitle(locals.membership, deleted)
+			deleted === undefined ? undefined : deletedDossierTitle(locals.membership, deleted),
+			waitingForMe(locals.membership)
 		])
 	);
 	return {
 		query,
 		listed,
+		waiting,
 		deleted: deleted && deletedTitle ? { id: deleted, title: deletedTitle } : null,
 		mayWrite: can(locals.membership, 'dossier.write')
 	};

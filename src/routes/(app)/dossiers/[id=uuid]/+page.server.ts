@@ -10,6 +10,7 @@ import { orHttpError } from '$lib/server/http/errors';
 import { orFormFault } from '$lib/server/http/forms';
 import { idIn } from '$lib/server/http/ids';
 import { deletedReportNumber } from '$lib/server/reports/change';
+import { readersOf } from '$lib/server/reviews/waiting';
 import { answerInBrief, methodTitle } from '$lib/wording/answer-in-brief';
 import type { Actions, PageServerLoad } from './$types';
 
@@ -27,6 +28,12 @@ export const load: PageServerLoad = async ({ locals, params, url }) => {
 		])
 	);
 	const { dossier, calculations, reports, evidence } = page;
+	const readers = await orHttpError(
+		readersOf(
+			membership,
+			reports.rows.map(({ id }) => id)
+		)
+	);
 	return {
 		dossier: {
 			id: dossier.id,
@@ -48,7 +55,8 @@ export const load: PageServerLoad = async ({ locals, params, url }) => {
 		calculationsInAll: calculations.total,
 		reports: reports.rows.map(({ outcome, ...row }) => ({
 			...row,
-			answer: outcome && answerInBrief(outcome)
+			answer: outcome && answerInBrief(outcome),
+			readers: readers.get(row.id) ?? null
 		})),
 		reportsInAll: reports.total,
 		evidence,
@@ -58,6 +66,7 @@ export const load: PageServerLoad = async ({ locals, params, url }) => {
 		deletedFile: deletedFile && fileName ? { id: deletedFile, fileName } : null,
 		may: {
 			edit: can(membership, 'dossier.write'),
+			inviteGuests: can(membership, 'guests.manage'),
 			calculate: can(membership, 'calculation.write'),
 			report: can(membership, 'report.write'),
 			upload: can(membership, 'evidence.write')

@@ -1,30 +1,48 @@
-import { redirect } from '@sveltejs/kit';
+import { fail, redirect } from '@sveltejs/kit';
+import { can } from '$lib/server/access/can';
+import { NoExportsError } from '$lib/server/billing/errors';
 import { orHttpError } from '$lib/server/http/errors';
 import { orFormFault } from '$lib/server/http/forms';
 import { dutiesOf, issueOf, issueReport } from '$lib/server/reports/issue';
 import { getReport, runChoices } from '$lib/server/reports/load';
 import { placeLink } from '$lib/server/reports/places';
+import { reviewOf } from '$lib/server/reviews/state';
 import type { Actions, PageServerLoad } from './$types';
 
 export const load: PageServerLoad = async ({ locals, params }) => {
-	const report = await orHttpError(getReport(locals.membership, params.id));
-	if ((await orHttpError(issueOf(locals.membership, report))) !== null)
-		redirect(307, `/reports/${params.id}`);
-	const runs = await orHttpError(runChoices(locals.membership, report.dossier.id, report.runIds));
-	const duties = await orHttpError(dutiesOf(locals.membership, report));
-	const { number, revision, title, text, dossier } = report;
+	const { membership } = locals;
+	const report = await orHttpError(getReport(membership, params.id));
+	const issue = await orHttpError(issueOf(membership, report));
+	if (issue !== null && issue.state !== 'failed') redirect(303, `/reports/${params.id}`);
+	const runs = await orHttpError(runChoices(membership, report.dossier.id, report.runIds));
+	const duties = await orHttpError(dutiesOf(membership, report));
+	const review = await orHttpError(reviewOf(membership, params.id));
+	const { number, revision, title, text, dossier, state } = report;
+	const [round] = review.rounds;
+	const approved = state === 'approved' && review.approval?.holds === true ? (round ?? null) : null;
 	return {
 		report: { id: report.id, number, revision, title, text, client: dossier.client },
-		organisation: locals.membership?.organisationName ?? '',
+		organisation: membership?.organisationName ?? '',
 		runs: runs.filter(({ id }) => report.runIds.includes(id)),
-		duties: duties.map((duty) => ({ message: duty.message, href: placeLink(duty.place, report, runs) }))
+		duties: duties.map((duty) => ({ message: duty.message, href: placeLink(duty.place, report, runs) })),
+		approved,
+		/** Nobody has approved it, and the organisation issues nothing without that, or it is with a reviewer. */
+		reviewFirst:
+			approved === null && (review.secondReaderWanted || state === 'in-review' || state === 'returned'),
+		maySend: review.maySend,
+		mayPay: can(membership, 'billing.manage')
 	};
 };
 
 export const actions: Actions = {
 	default: async (event) => {
-		const outcome = await orFormFault(event, issueReport(event.locals.membership, event.params.id));
-		if ('fault' in outcome) return outcome.fault;
+		let noExports = false;
+		const work = issueReport(event.locals.membership, event.params.id).catch((cause: unknown) => {
+			noExports = cause instanceof NoExportsError;
+			throw cause;
+		});
+		const outcome = await orFormFault(event, work);
+		if ('fault' in outcome) return fail(outcome.fault.status, { ...outcome.fault.data, noExports });
 		redirect(303, `/reports/${event.params.id}`);
 	}
 };
