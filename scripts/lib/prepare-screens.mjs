@@ -24,6 +24,8 @@ import { randomUUID } from 'node:crypto';
  * @property {string} preview of that draft, done
  * @property {string} issued report of the consultant
  * @property {string} code of the issued report
+ * @property {string} shared page that a link to it shows
+ * @property {string} revoked page of a link to it that was taken back
  * @property {Buffer} pdf of the issued report
  * @property {string} confirmLink of a person who has not confirmed yet
  * @property {string} resetLink of that person's
@@ -150,6 +152,23 @@ async function copyOf(page, title) {
 	return new URL(page.url()).pathname.replace(/\/question$/, '');
 }
 
+/** A new link to an issued report. @param {Page} page @param {string} issued */
+async function newLink(page, issued) {
+	await visit(page, `${issued}/links`);
+	await page.getByLabel('Whom is it for?').fill('The reader of the pictures');
+	await page.getByRole('button', { name: 'Make the link' }).click();
+	return new URL(await page.getByLabel('Address', { exact: true }).inputValue()).pathname;
+}
+
+/** @param {Page} page @param {string} issued */
+async function links(page, issued) {
+	const revoked = await newLink(page, issued);
+	await page.locator('summary').filter({ hasText: 'Revoke' }).first().click();
+	await page.getByRole('button', { name: 'Revoke this link' }).first().click();
+	await page.getByRole('status').filter({ hasText: 'shows nothing any more' }).waitFor();
+	return { revoked, shared: await newLink(page, issued) };
+}
+
 /** @param {Page} page signed in as the consultant */
 async function consultantsWork(page) {
 	const limit = await linkIn(page, '/calculations', 'Coated sheet, aged three years');
@@ -162,12 +181,13 @@ async function consultantsWork(page) {
 	await download.waitFor({ timeout: 60_000 });
 	const pdf = await (await page.request.get(`${issued}/file.pdf`)).body();
 	const code = (await page.locator('a[href^="/verify/"] .mono').first().textContent()) ?? '';
+	const { shared, revoked } = await links(page, issued);
 	const draft = await draftReport(page, dossier);
 	await visit(page, draft);
 	await page.getByRole('button', { name: 'Save and preview' }).click();
 	await page.getByRole('link', { name: 'Open the preview' }).waitFor({ timeout: 60_000 });
 	const preview = new URL(page.url()).pathname;
-	return { dossier, limit, value, unfinished, issued, code, pdf, draft, preview };
+	return { dossier, limit, value, unfinished, issued, code, pdf, shared, revoked, draft, preview };
 }
 
 /**

@@ -218,7 +218,30 @@ const reportScreens = [
 	{ name: 'report-draft', who: 'consultant', open: of(({ draft }) => draft) },
 	{ name: 'report-preview', who: 'consultant', open: of(({ preview }) => preview) },
 	{ name: 'report-issue', who: 'consultant', open: of(({ draft }) => `${draft}/issue`) },
-	{ name: 'report-issued', who: 'consultant', open: of(({ issued }) => issued) }
+	{ name: 'report-issued', who: 'consultant', open: of(({ issued }) => issued) },
+	{ name: 'report-links', who: 'consultant', open: of(({ issued }) => `${issued}/links`) },
+	{
+		name: 'report-links-made',
+		who: 'consultant',
+		open: async (page, { issued }) => {
+			await visit(page, `${issued}/links`);
+			await page.getByLabel('Whom is it for?').fill('The reader of the pictures');
+			await press(page, 'Make the link');
+			await page.getByLabel('Address', { exact: true }).waitFor();
+		}
+	},
+	{
+		name: 'report-links-faults',
+		who: 'consultant',
+		open: async (page, { issued }) => {
+			await visit(page, `${issued}/links`);
+			await press(page, 'Make the link');
+			await faultsShown(page);
+		}
+	},
+	{ name: 'shared', who: 'nobody', open: of(({ shared }) => shared) },
+	{ name: 'shared-revoked', who: 'nobody', open: of(({ revoked }) => revoked), status: 410 },
+	{ name: 'shared-unknown', who: 'nobody', open: at(`/shared/${'x'.repeat(43)}`), status: 404 }
 ];
 
 /** @type {readonly Screen[]} */

@@ -26,6 +26,9 @@ async function makeLink(page: Page, recipient: string): Promise<string> {
 	await page.getByLabel('after 30 days').check();
 	await page.getByRole('button', { name: 'Make the link' }).click();
 	const address = await page.getByLabel('Address', { exact: true }).inputValue();
+	// Ready for the next one, with its usual choice.
+	await expect(page.getByLabel('after 90 days')).toBeChecked();
+	await expect(page.getByLabel('Whom is it for?')).toHaveValue('');
 	expect(address).toMatch(/\/shared\/[A-Za-z0-9_-]{43}$/);
 	return address;
 }
@@ -84,7 +87,7 @@ test('a client reads, checks and downloads by a link until it is revoked', async
 
 	const pdf = await download(client, /^Signed PDF/);
 	expect(pdf.name).toMatch(/^TB-\d{4}-r1\.pdf$/);
-	const record = await download(client, /^Record/);
+	const record = await download(client, /^Computation record/);
 	expect(JSON.parse(record.bytes.toString('utf8'))).toMatchObject({ format: 'noonmark-record/1' });
 	const { root, store } = await trustStore(client);
 	const file = temporaryFile('shared.pdf', pdf.bytes);

@@ -166,12 +166,14 @@ describe('ReadingPage', () => {
 		expect(main).toContain(
 			'To Marrow Coast Housing Trust, attn. S. Perrin, from Tallis Brook Consulting, 19 November'
 		);
-		expect(main).toMatch(/Genuine and unchanged\.\s+Checked 1.December.2026, 12:00.UTC: 14 of 14 figures/);
+		expect(main).toMatch(
+			/Genuine and unchanged\.\s+Checked 1.December.2026, 12:00.UTC\.\s+Computed again from its record: 14 of 14 figures/
+		);
 		expect(screen.queryByRole('alert')).toBeNull();
 		expect(screen.getByRole('link', { name: /^Signed PDF/ }).getAttribute('href')).toBe(
 			'/shared/token/report.pdf'
 		);
-		expect(screen.getByRole('link', { name: /^Record \(812 bytes\)/ }).getAttribute('href')).toBe(
+		expect(screen.getByRole('link', { name: /^Computation record \(812 bytes\)/ }).getAttribute('href')).toBe(
 			'/shared/token/record.json'
 		);
 	});
@@ -238,7 +240,7 @@ describe('ReadingPage', () => {
 			files: { record: null }
 		});
 		expect(screen.getByRole('alert').textContent).toContain('Altered');
-		expect(screen.queryByRole('link', { name: /^Record/ })).toBeNull();
+		expect(screen.queryByRole('link', { name: /^Computation record/ })).toBeNull();
 	});
 
 	it('says where nothing was recomputed, and by which command it is', () => {
