@@ -5,6 +5,7 @@ import { database, type Database } from '../db';
 import { users } from '../db/schema';
 import { passwordChangedMail } from '../mail/templates';
 import { sendBeside } from '../mail/transport';
+import { voidApprovalsNaming } from '../reviews/renamed';
 import { findAccountById, storePassword } from './people';
 import type { Person } from './person';
 import { refuseNewPassword } from './password-rules';
@@ -13,7 +14,10 @@ import { closeAllSessions } from './sessions';
 
 /** Changes a person's own name, which new reports print. */
 export async function changeName(person: Person, name: string, db: Database = database()): Promise<void> {
-	await db.update(users).set({ name }).where(eq(users.id, person.id));
+	await db.transaction(async (tx) => {
+		await tx.update(users).set({ name }).where(eq(users.id, person.id));
+		await voidApprovalsNaming(tx, person.id);
+	});
 }
 
 /**
