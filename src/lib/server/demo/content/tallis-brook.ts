@@ -97,7 +97,7 @@ export const tallisBrookWork: readonly DemoDossier[] = [
 						output: 'solarReflectanceIndex',
 						kind: 'lower-bound',
 						value: '75',
-						unit: '1',
+						unit: '',
 						giveOrTake: '',
 						averages: 'one flat, insulated surface under the Sun of the standard, at one moment',
 						route: 'Read off the printed table of the maker for a sheet that is a step darker than this one.'
