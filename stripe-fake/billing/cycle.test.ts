@@ -38,12 +38,10 @@ const now = (subscription: Stripe.Subscription) => shop.stripe.subscriptions.ret
 const invoicesOf = async (subscription: Stripe.Subscription) =>
 	(await shop.stripe.invoices.list({ subscription: subscription.id })).data;
 
-/** Moves to a time after the end of the first period. */
+/** Moves the customer's clock to a time after the end of the period. */
 function pass(subscription: Stripe.Subscription, days: number, hours = 0): void {
 	const customer = idOf(subscription.customer);
-	const item = itemOf(subscription);
-	const target = item.current_period_end + days * 86_400 + hours * 3600;
-	shop.fake.control.advance({ customer, seconds: 0 });
+	const target = itemOf(subscription).current_period_end + days * 86_400 + hours * 3600;
 	const { now: at } = shop.fake.control.advance({ customer, seconds: 0 });
 	shop.fake.control.advance({ customer, seconds: target - at });
 }

@@ -41,7 +41,8 @@ export function httpServer(
 	answer: (request: HttpRequest) => Promise<HttpAnswer>,
 	onSent: () => void
 ): Server {
-	return createServer((request, response) => {
+	// A client that sends its next request just when an idle connection is closed would see it cut.
+	return createServer({ keepAliveTimeout: 75_000 }, (request, response) => {
 		response.on('close', onSent);
 		read(request)
 			.then(answer)

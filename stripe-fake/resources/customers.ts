@@ -138,7 +138,11 @@ function update({ world, params, ids: [id = ''] }: Call): Customer {
 
 function retrieve({ world, params, ids: [id = ''] }: Call): Customer | DeletedCustomer {
 	params.done();
-	return world.objects.deletedCustomers[id] ?? find(world, 'customers', id);
+	return find(
+		world,
+		Object.hasOwn(world.objects.deletedCustomers, id) ? 'deletedCustomers' : 'customers',
+		id
+	);
 }
 
 function list({ world, params }: Call): List<Customer> {

@@ -2,7 +2,11 @@ import { createServer, type Server } from 'node:http';
 import { once } from 'node:events';
 import type { AddressInfo } from 'node:net';
 import Stripe from 'stripe';
+import { vi } from 'vitest';
 import { startStripeFake, type StartOptions, type StripeFake } from '../start';
+
+// Every step is a request over HTTP, and the machine may be busy.
+vi.setConfig({ testTimeout: 30_000, hookTimeout: 30_000 });
 
 export const key = 'sk_test_standin';
 export const webhookSecret = 'whsec_standin';
