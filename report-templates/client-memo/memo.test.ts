@@ -58,7 +58,7 @@ beforeAll(async () => {
 	files.draft = await renderReport(model('limit'), { watermark: true });
 }, 120_000);
 
-describe.each(['value', 'claim', 'limit', 'strain'])('the memo “%s”', (name) => {
+describe.each(['value', 'claim', 'limit', 'strain', 'reviewed'])('the memo “%s”', (name) => {
 	it('owes its reader nothing', () => {
 		expect(unmetDuties(model(name))).toEqual([]);
 	});
@@ -187,6 +187,49 @@ describe('what a memo says', () => {
 		);
 		expect(tops.length).toBeGreaterThan(8);
 		expect(new Set(tops).size).toBeGreaterThan(5);
+	});
+});
+
+describe('the review', () => {
+	it('prints who approved it, as what, when and in which words, and nothing of “not reviewed”', () => {
+		const text = flat(pages('reviewed').join(' '));
+		expect(text).toContain(
+			'Reviewed and approved by Idris Venn, guest reviewer from outside the organisation'
+		);
+		expect(text).toContain('on 27 November 2026');
+		expect(text).toContain('Statement at the approval: “I followed each input to its source');
+		expect(text).not.toContain('Not independently reviewed');
+	});
+
+	it('prints the reviewer’s own figures apart from the results, each with what may be said of it', () => {
+		const text = flat(tool('pdftotext', file('reviewed'), '-'));
+		expect(text).toContain('Figures of the reviewer, by another route');
+		expect(text).toContain('−25 °C, give or take 2 K');
+		expect(text).toContain('not above 60 °C');
+		expect(text).toContain('it is not compared with the result');
+		expect(text).toMatch(/lies [\d.]+ K (above|below) the result/);
+		expect(text).toContain('only as far as the bound holds for that too');
+		const { runs } = model('reviewed');
+		expect(runs[0]?.outputs).toEqual(model('value').runs[0]?.outputs);
+	});
+
+	it('says of an approval by an author that it is no review', async () => {
+		const own: ReportModel = {
+			...model('reviewed'),
+			review: { kind: 'approved-by-author', by: { name: 'Moss Oakes' }, at: '2026-11-27T18:40:00Z' }
+		};
+		writeFileSync(join(folder, 'own.pdf'), await renderReport(own, { signature }));
+		const text = flat(tool('pdftotext', join(folder, 'own.pdf'), '-'));
+		expect(text).toContain(
+			'Not independently reviewed: approved by its author Moss Oakes, on 27 November 2026.'
+		);
+		expect(text).not.toContain('did not write it');
+	});
+
+	it('leaves a model frozen before there were reviewers’ figures as it was', async () => {
+		const old = model('value');
+		expect(old.runs.every((run) => !('reviewerFigures' in run))).toBe(true);
+		expect((await renderReport(old, { signature })).equals(files.value ?? Buffer.alloc(0))).toBe(true);
 	});
 });
 

@@ -281,6 +281,53 @@ const limit: Sample = async (context) =>
 		]
 	});
 
+/** A value that somebody else read and approved, with figures of their own by other routes. */
+const reviewed: Sample = async (context) => {
+	const source = await value(context);
+	const by = { name: 'Idris Venn' };
+	const route = { runId: 'run-value', output: 'sunlitMeanTemperature', by } as const;
+	return {
+		...source,
+		report: { ...source.report, number: 'FC-0033' },
+		review: {
+			kind: 'reviewed',
+			by: { ...by, role: 'guest reviewer from outside the organisation' },
+			at: '2026-11-27T18:40:00Z',
+			remarks:
+				'I followed each input to its source, computed the record again and found the same figures. The answer says what the result averages.'
+		},
+		reviewerFigures: [
+			{
+				...route,
+				kind: 'value',
+				value: '-25',
+				unit: 'degC',
+				giveOrTake: '2',
+				averages: 'the sunlit hemisphere, at one instant; temperature of the surface itself',
+				route: 'Four fifths of the hottest point, read off a chart of black-body temperatures'
+			},
+			{
+				...route,
+				kind: 'upper-bound',
+				value: '60',
+				unit: 'degC',
+				giveOrTake: '',
+				averages: 'the point right under the Sun, at one instant',
+				route: 'A black plate that faces the Sun and loses heat from one side only'
+			},
+			{
+				...route,
+				kind: 'value',
+				value: '-90',
+				unit: 'degC',
+				giveOrTake: '',
+				averages: '',
+				route: 'A figure recalled from a textbook on small bodies'
+			}
+		]
+	};
+};
+
 const longWord = 'https://archive.example/'.padEnd(140, 'abcdef0123456789');
 
 /** Long texts, a hostile title, rare characters, two calculations and many notes. */
@@ -360,4 +407,4 @@ const strain: Sample = async (context) =>
 		]
 	});
 
-export const samples: Readonly<Record<string, Sample>> = { value, claim, limit, strain };
+export const samples: Readonly<Record<string, Sample>> = { value, claim, limit, strain, reviewed };

@@ -47,19 +47,16 @@ function reviewerFigures(kit: DocumentKit, run: RunModel): Node[] {
 		dataTable(
 			kit,
 			[
-				{ title: words.reviewerFiguresTable.quantity, width: 104 },
-				{ title: words.reviewerFiguresTable.figure, width: 84, align: 'right' },
-				{ title: words.reviewerFiguresTable.averages, width: 96 },
+				{ title: words.reviewerFiguresTable.quantity, width: 88 },
+				{ title: words.reviewerFiguresTable.figure, width: 78, align: 'right' },
+				{ title: words.reviewerFiguresTable.averages, width: 92 },
 				{ title: words.reviewerFiguresTable.route, width: '*' }
 			],
 			rows.map((row) => [
 				wordsCell(kit, capitalise(row.quantity)),
 				numberCell(kit, row.figure),
 				wordsCell(kit, row.averages),
-				wordsCell(kit, [
-					...kit.runs(`${row.route} (${row.by})\n`, sans),
-					...kit.runs(row.comparison, { ...sans, bold: true })
-				])
+				wordsCell(kit, [...kit.runs(`${row.route} (${row.by})\n`, sans), ...kit.runs(row.comparison, sans)])
 			])
 		)
 	];

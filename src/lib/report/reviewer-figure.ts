@@ -130,14 +130,14 @@ export function comparisonSentence(
 	const own = averagesOf(spec);
 	const same = sameAverage(stated, own);
 	if (figure.kind === 'value' && same) return valueSentence(numbers, output, scale);
-	const averages =
-		stated === ''
-			? `What the figure averages is not stated; the result averages “${own}”.`
-			: `The figure averages “${stated}”, the result “${own}”.`;
-	if (figure.kind === 'value') return `${averages} The two are not compared.`;
+	if (figure.kind === 'value') {
+		return stated === ''
+			? 'What the figure averages is not stated: it is not compared with the result.'
+			: `The result averages “${own}”, the figure something described otherwise: the two are not compared.`;
+	}
 	const bound = boundSentence(figure.kind, numbers.value, output);
 	if (same) return bound;
-	return `${bound} ${averages} This tells something of the result only as far as the bound holds for what the result averages.`;
+	return `${bound} The result averages “${own}”: this tells something of it only as far as the bound holds for that too.`;
 }
 
 /** One printed row. */
