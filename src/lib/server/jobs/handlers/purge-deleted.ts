@@ -14,6 +14,7 @@ import {
 	verificationTokens,
 	workers
 } from '../../db/schema';
+import { dropOldInvitations } from '../../organisations/invitations/withdraw';
 import type { JobDefinition } from '../job';
 
 const thirtyDaysAgo = sql`now() - interval '30 days'`;
@@ -61,6 +62,7 @@ export const purgeDeletedJob: JobDefinition<'purge-deleted'> = {
 		await dropEndedSessions(db);
 		await dropUnconfirmed(db);
 		await dropOldWindows(db);
+		await dropOldInvitations(db);
 		await finish(purge);
 	},
 	// Nobody waits for it: the next hour's job tries again, and the log has the fault.

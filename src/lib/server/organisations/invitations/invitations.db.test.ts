@@ -29,7 +29,7 @@ import { enrolForSetUp } from '../set-up';
 import { acceptInvitation, maskedAddress, NoSeatError, openInvitation } from './accept';
 import { inviteGuest, inviteMember } from './invite';
 import { listOpenInvitations } from './open';
-import { resendInvitation, revokeInvitation } from './withdraw';
+import { dropOldInvitations, resendInvitation, revokeInvitation } from './withdraw';
 
 let db: Database;
 let drop: () => Promise<void>;
@@ -341,6 +341,26 @@ describe('an invitation of a member', () => {
 	it('is unknown where nobody sent it', async () => {
 		await expect(openInvitation('x'.repeat(43), db)).rejects.toThrow(NotFoundError);
 		await expect(acceptInvitation(await aPerson(db), '', db)).rejects.toThrow(NotFoundError);
+	});
+
+	it('is forgotten ninety days after its end, and not before', async () => {
+		const home = await house();
+		const ended = [await aPerson(db), await aPerson(db), await aPerson(db)];
+		const tokens: string[] = [];
+		for (const person of ended) tokens.push(await invited(home, person));
+		const daysAgo = (days: number) => sql`now() - make_interval(days => ${days})`;
+		const age = (token: string, days: number, how: 'expiresAt' | 'revokedAt') =>
+			db
+				.update(invitations)
+				.set({ [how]: daysAgo(days) })
+				.where(eq(invitations.tokenHash, hashToken(token)));
+		await age(tokens[0] ?? '', 91, 'expiresAt');
+		await age(tokens[1] ?? '', 91, 'revokedAt');
+		await age(tokens[2] ?? '', 89, 'expiresAt');
+		await dropOldInvitations(db);
+		await expect(openInvitation(tokens[0] ?? '', db)).rejects.toThrow(NotFoundError);
+		await expect(openInvitation(tokens[1] ?? '', db)).rejects.toThrow(NotFoundError);
+		expect((await openInvitation(tokens[2] ?? '', db)).state).toBe('expired');
 	});
 
 	it('is paced: by inviter, and by address whoever sends', async () => {

@@ -125,3 +125,15 @@ export async function revokeOpenOf(
 	for (const { id } of revoked) await recordAudit(tx, by, 'invitations.revoke', id);
 	return revoked.length;
 }
+
+/**
+ * Drops invitations that ended ninety days ago: an address of somebody who did not come in is not kept for ever. Who
+ * came in stands in the audit trail. A housekeeping job calls it.
+ */
+export async function dropOldInvitations(db: Database = database()): Promise<void> {
+	await db
+		.delete(invitations)
+		.where(
+			sql`coalesce(${invitations.acceptedAt}, ${invitations.revokedAt}, ${invitations.expiresAt}) < now() - interval '90 days'`
+		);
+}
