@@ -87,7 +87,7 @@ export const documentWords = {
 		quantity: 'Beside the result',
 		figure: 'Reviewer’s figure',
 		averages: 'What it averages',
-		route: 'Route, by whom, and how it lies'
+		route: 'Route, by whom, and what may be said'
 	},
 	written: (name: string) => `Written by ${name}.`,
 	authorised: (name: string) => `Its issue was authorised by ${name}.`,

@@ -32,7 +32,7 @@ export const reviews = pgTable(
 		note: text('note').notNull().default(''),
 		/** Who was asked and gets the mails; any reviewer who may see the report may decide. */
 		askedOf: uuid('asked_of').array().notNull().default([]),
-		/** The report as it stood when it was sent: what the next round is compared with. */
+		/** The report as it stood when it was sent, then as it was decided on: what the next round is compared with. */
 		model: jsonb('model').notNull(),
 		/** SHA-256 over everything that an approval covers, in canonical JSON. */
 		digest: text('digest').notNull(),
