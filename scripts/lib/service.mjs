@@ -147,6 +147,9 @@ export async function startService(options) {
 		});
 		// The demo has subscribers.
 		await waitUntilReady(`${payments}/_control/ready`, part.crashed);
+		const catalogue = await runBuilt('catalogue', env);
+		if (catalogue.code !== 0)
+			throw new PlainError(`The prices could not be made.\n${catalogue.output.trim()}`);
 	}
 	say('Loading the demo …');
 	const demo = await runBuilt('demo', env);

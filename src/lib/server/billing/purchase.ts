@@ -11,7 +11,9 @@ import {
 } from './plans';
 
 /** What somebody sets out to buy, as a form gives it. */
-export type PurchaseInput = { plan: string; interval: Interval; seats: number } | { packs: number };
+export type PurchaseInput =
+	/** Without a plan it is the one for these seats. */
+	{ plan?: string; interval: Interval; seats: number } | { packs: number };
 
 export type Purchase =
 	| { kind: 'subscription'; plan: Plan; interval: Interval; quantity: number }
@@ -48,12 +50,17 @@ export function readPurchase(input: PurchaseInput, taken: number, plans: Plans):
 		}
 		return { kind: 'pack', plan: null, interval: null, quantity: packs };
 	}
-	const plan = planById(input.plan, plans);
-	if (plan === undefined) {
-		throw new InvalidInputError('There is no such plan.', { plan: 'Choose one of the plans.' });
-	}
 	if (!Number.isInteger(input.seats) || input.seats < 1) {
 		throw new InvalidInputError('The seats are no number.', { seats: 'Give the seats as a whole number.' });
+	}
+	const plan = input.plan === undefined ? planForSeats(input.seats, plans) : planById(input.plan, plans);
+	if (plan === undefined) {
+		const most = Math.max(...plans.plans.map(({ seats }) => seats.to));
+		const fields: Record<string, string> =
+			input.plan === undefined
+				? { seats: `No plan has so many seats: ${most} at most.` }
+				: { plan: 'Choose one of the plans.' };
+		throw new InvalidInputError('There is no such plan.', fields);
 	}
 	requireSeats(plan, input.seats, taken, plans);
 	return { kind: 'subscription', plan, interval: input.interval, quantity: input.seats };

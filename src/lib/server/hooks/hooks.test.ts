@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { ownOrigin } from './loopback';
 import { refuseForeign } from './same-origin';
-import { addSecurityHeaders } from './security-headers';
+import { addSecurityHeaders, letFormsLeadTo } from './security-headers';
 
 const origin = 'https://noonmark.example';
 
@@ -103,5 +103,26 @@ describe('addSecurityHeaders', () => {
 		addSecurityHeaders(headers, true);
 		expect(headers.get('content-security-policy')).toContain("frame-ancestors 'self'");
 		expect(headers.get('content-security-policy')).toContain("default-src 'none'");
+	});
+});
+
+describe('letFormsLeadTo', () => {
+	it('widens where forms may lead, and nothing else', () => {
+		const headers = new Headers({
+			'content-security-policy': "default-src 'none'; form-action 'self'; base-uri 'none'"
+		});
+		letFormsLeadTo(headers, ['https://pay.example', 'https://portal.example']);
+		expect(headers.get('content-security-policy')).toBe(
+			"default-src 'none'; form-action 'self' https://pay.example https://portal.example; base-uri 'none'"
+		);
+	});
+
+	it('leaves a policy alone that lets forms lead nowhere, and an answer without one', () => {
+		const strict = new Headers({ 'content-security-policy': "form-action 'none'" });
+		letFormsLeadTo(strict, ['https://pay.example']);
+		expect(strict.get('content-security-policy')).toBe("form-action 'none'");
+		const bare = new Headers();
+		letFormsLeadTo(bare, ['https://pay.example']);
+		expect(bare.has('content-security-policy')).toBe(false);
 	});
 });

@@ -1,4 +1,5 @@
 import { isHttpError, isRedirect, type Handle, type RequestEvent } from '@sveltejs/kit';
+import { paymentOrigins } from '../billing/payment-page';
 import { env } from '../env';
 import { log } from '../log';
 import { addSharedHeaders, isSharedPath } from './shared-pages';
@@ -48,6 +49,19 @@ export function addSecurityHeaders(headers: Headers, https: boolean): void {
 	if (!headers.has('cache-control')) headers.set('cache-control', 'no-store');
 }
 
+const isBillingPath = (path: string) => path === '/billing' || path.startsWith('/billing/');
+
+/** Lets the forms of a page lead to further origins: a browser holds a form to the policy through redirects as well. */
+export function letFormsLeadTo(headers: Headers, origins: readonly string[]): void {
+	const policy = headers.get('content-security-policy');
+	if (policy === null) return;
+	const widened = policy.replace(
+		/(^|;\s*)form-action 'self'(?=;|$)/,
+		`$1form-action 'self' ${origins.join(' ')}`
+	);
+	headers.set('content-security-policy', widened);
+}
+
 /** Shown when not even a page can be made, such as while the database is away. */
 function bareErrorPage(requestId: string): Response {
 	const html =
@@ -82,6 +96,7 @@ export const securityHeaders: Handle = async ({ event, resolve }) => {
 		response = answerThrown(thrown, event);
 	}
 	if (isSharedPath(event.url.pathname)) addSharedHeaders(response.headers);
+	if (isBillingPath(event.url.pathname)) letFormsLeadTo(response.headers, paymentOrigins());
 	addSecurityHeaders(response.headers, new URL(env().ORIGIN).protocol === 'https:');
 	return response;
 };
