@@ -20,8 +20,8 @@ export function newcomer(): Newcomer {
 }
 
 /** Fills the sign-up form and sends it. */
-export async function signUp(page: Page, person: Newcomer): Promise<void> {
-	await page.goto('/sign-up');
+export async function signUp(page: Page, person: Newcomer, from = '/sign-up'): Promise<void> {
+	await page.goto(from);
 	await settled(page);
 	await page.getByLabel('Your name').fill(person.name);
 	await page.getByLabel('E-mail address').fill(person.email);
@@ -29,12 +29,15 @@ export async function signUp(page: Page, person: Newcomer): Promise<void> {
 	await page.getByRole('button', { name: 'Make the account' }).click();
 }
 
-/** Path of the link in the newest mail to a person, and the mail's subject. */
+/** The link in the newest mail to a person, as path and query. */
 export async function mailedPath(page: Page, email: string, part: RegExp): Promise<string> {
 	let path: string | undefined;
 	await expect(async () => {
 		const mail = await mailTo(page.request, email);
-		path = mail.links.map((link) => new URL(link).pathname).find((one) => part.test(one));
+		path = mail.links
+			.map((link) => new URL(link))
+			.map(({ pathname, search }) => pathname + search)
+			.find((one) => part.test(one));
 		expect(path, `a link to ${part} in the newest mail to ${email}`).toBeDefined();
 	}).toPass({ timeout: 15_000 });
 	return path as string;
@@ -61,8 +64,12 @@ export async function foundOrganisation(page: Page, name: string): Promise<void>
 }
 
 /** Sends the sign-in form; what comes of it is the test's. */
-export async function trySignIn(page: Page, person: { email: string; password: string }): Promise<void> {
-	await page.goto('/sign-in');
+export async function trySignIn(
+	page: Page,
+	person: { email: string; password: string },
+	from = '/sign-in'
+): Promise<void> {
+	await page.goto(from);
 	await settled(page);
 	await page.getByLabel('E-mail').fill(person.email);
 	await page.getByLabel('Password', { exact: true }).fill(person.password);

@@ -20,7 +20,18 @@ export const load: PageServerLoad = async ({ locals, params, cookies, setHeaders
 	setHeaders({ 'cache-control': 'private, no-store' });
 	const invitation = await orHttpError(openInvitation(params.token));
 	const { person } = locals;
-	const { state, email, organisationName, kind, roles, dossier, inviter, expiresAt, acceptedBy } = invitation;
+	const {
+		state,
+		email,
+		organisationId,
+		organisationName,
+		kind,
+		roles,
+		dossier,
+		inviter,
+		expiresAt,
+		acceptedBy
+	} = invitation;
 	const mine = person !== null && isAddressee(invitation, person);
 	const isOpen = state === 'open';
 	// So that the sign-up page need not ask for it again.
@@ -30,7 +41,9 @@ export const load: PageServerLoad = async ({ locals, params, cookies, setHeaders
 		home: person === null ? '/' : homeOf(locals.membership),
 		returnTo: `/invitation/${params.token}`,
 		mine,
-		usedByReader: person !== null && acceptedBy === person.id,
+		// Somebody who was taken out since has not got what the link gave.
+		usedByReader:
+			person !== null && acceptedBy === person.id && (await membershipIn(person, organisationId)) !== null,
 		invitation: {
 			state,
 			organisationName,
