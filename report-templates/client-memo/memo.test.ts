@@ -202,7 +202,7 @@ describe('the review', () => {
 	});
 
 	it('prints the reviewer’s own figures apart from the results, each with what may be said of it', () => {
-		const text = flat(tool('pdftotext', file('reviewed'), '-'));
+		const text = flat(tool('pdftotext', '-raw', file('reviewed'), '-'));
 		expect(text).toContain('Figures of the reviewer, by another route');
 		expect(text).toContain('−25 °C, give or take 2 K');
 		expect(text).toContain('not above 60 °C');
