@@ -1,10 +1,9 @@
 import { expect, test, type Page } from '@playwright/test';
-import { demoPage, mailedPath, newcomer, settleIn, signUp, trySignIn, type Newcomer } from './people';
+import { signUpFrom, toInvitation } from './joining';
+import { demoPage, mailedPath, newcomer, settleIn, signUp, trySignIn } from './people';
 import { newDossier, settled } from './support';
 
 /* How people come in, are told why not, and go again: with the mails as a mail server received them. */
-
-const toInvitation = /^\/invitation\/[\w-]{43}$/;
 
 async function inviteMember(owner: Page, email: string, role = 'reader'): Promise<string> {
 	await owner.goto('/organisation');
@@ -17,27 +16,6 @@ async function inviteMember(owner: Page, email: string, role = 'reader'): Promis
 	await form.getByRole('button', { name: 'Send the invitation' }).click();
 	await expect(owner.getByRole('status')).toContainText(`The invitation is on its way to ${email}.`);
 	return mailedPath(owner, email, toInvitation);
-}
-
-/** From an invitation's page through sign-up and the mail that confirms the address back to the invitation. */
-async function signUpFrom(page: Page, invitation: string, person: Newcomer): Promise<void> {
-	await page.goto(invitation);
-	await settled(page);
-	await page.getByRole('main').getByRole('link', { name: 'Make an account' }).click();
-	await expect(page).toHaveURL(/\/sign-up\?returnTo=/);
-	await settled(page);
-	// The address need not be typed again.
-	await expect(page.getByLabel('E-mail address')).toHaveValue(person.email);
-	await page.getByLabel('Your name').fill(person.name);
-	await page.getByLabel('Password', { exact: true }).fill(person.password);
-	await page.getByRole('button', { name: 'Make the account' }).click();
-	await expect(page).toHaveURL(/\/sign-up\/confirm/);
-	await page.goto(await mailedPath(page, person.email, /^\/confirm\//));
-	await settled(page);
-	await page.getByLabel('Password', { exact: true }).fill(person.password);
-	await page.getByRole('button', { name: 'Confirm and sign in' }).click();
-	await expect(page).toHaveURL(new RegExp(`${invitation}$`));
-	await settled(page);
 }
 
 test('a newcomer is invited, makes an account, comes back and accepts; and is taken out again', async ({
