@@ -4,7 +4,7 @@ import { and, eq, isNotNull, sql } from 'drizzle-orm';
 import pino from 'pino';
 import { afterAll, afterEach, beforeAll, expect, it } from 'vitest';
 import { openDatabase } from '../db';
-import { exportDebits, exportGrants, issues, reports } from '../db/schema';
+import { exportDebits, exportGrants, issues, memberships, reports } from '../db/schema';
 import { issueReportJob, type ReportIssuing } from '../jobs/handlers/issue-report';
 import { enqueue } from '../jobs/queue';
 import { startRunner, type Runner } from '../jobs/runner';
@@ -243,3 +243,24 @@ it('keeps no debit without a file and no file without a debit when a worker is k
 		expect(kept?.pdf?.toString()).toBe(`file of ${issueIds[0]}`);
 	}
 }, 150_000);
+
+it('issues nothing for one who was taken out while the job waited, and debits nothing', async () => {
+	const { organisationId, authorId, issueIds } = await queuedIssues(test.db, 1);
+	await giveExports(test.db, organisationId, 3);
+	await test.db.delete(memberships).where(eq(memberships.userId, authorId));
+	await work(1);
+	await until(noneOpen);
+	expect(await outcome(organisationId)).toEqual({
+		signed: 0,
+		refused: 1,
+		debits: 0,
+		issued: 0,
+		approved: 1
+	});
+	const [issue] = await test.db
+		.select()
+		.from(issues)
+		.where(eq(issues.id, issueIds[0] ?? ''));
+	expect(issue).toMatchObject({ problemKind: 'fault', pdf: null });
+	expect(issue?.problem).toContain('may no longer issue reports');
+});

@@ -4,7 +4,7 @@ import type { Person } from '../accounts/person';
 import { database, type Queryable } from '../db';
 import { dossierGuests, dossiers, memberships, organisations } from '../db/schema';
 
-async function asMember(person: Person, db: Queryable): Promise<Membership[]> {
+async function asMember(person: Pick<Person, 'id'>, db: Queryable): Promise<Membership[]> {
 	const rows = await db
 		.select({
 			organisationId: organisations.id,
@@ -19,7 +19,7 @@ async function asMember(person: Person, db: Queryable): Promise<Membership[]> {
 }
 
 /** One membership an organisation, with the dossiers that the person was invited to. */
-async function asGuest(person: Person, db: Queryable): Promise<Membership[]> {
+async function asGuest(person: Pick<Person, 'id'>, db: Queryable): Promise<Membership[]> {
 	const rows = await db
 		.select({
 			organisationId: organisations.id,
@@ -49,7 +49,10 @@ async function asGuest(person: Person, db: Queryable): Promise<Membership[]> {
  * Every organisation that a person belongs to, the longest-standing first, then those where they are a guest. Who is
  * a member is no guest there as well.
  */
-export async function membershipsOf(person: Person, db: Queryable = database()): Promise<Membership[]> {
+export async function membershipsOf(
+	person: Pick<Person, 'id'>,
+	db: Queryable = database()
+): Promise<Membership[]> {
 	const [members, guests] = await Promise.all([asMember(person, db), asGuest(person, db)]);
 	const own = new Set(members.map(({ organisationId }) => organisationId));
 	return [...members, ...guests.filter(({ organisationId }) => !own.has(organisationId))];
@@ -57,7 +60,7 @@ export async function membershipsOf(person: Person, db: Queryable = database()):
 
 /** The person's membership in one organisation as it stands now, or null. */
 export async function membershipIn(
-	person: Person,
+	person: Pick<Person, 'id'>,
 	organisationId: string,
 	db: Queryable = database()
 ): Promise<Membership | null> {

@@ -1,5 +1,6 @@
 import { eq, sql } from 'drizzle-orm';
 import type { ReportModel } from '../../report';
+import { can } from '../access/can';
 import { debitExport } from '../billing/ledger';
 import type { Transaction } from '../db';
 import { auditEvents, reports } from '../db/schema';
@@ -7,6 +8,7 @@ import type { ReportIssuing } from '../jobs/handlers/issue-report';
 import type { Issue } from '../jobs/issue-fencing';
 import { PermanentJobError } from '../jobs/job';
 import { writeNotice } from '../notices/write';
+import { membershipIn } from '../organisations/memberships';
 import { approvalOf } from '../reviews/approval';
 import { organisationSigner, rootPem } from '../signing/authority';
 import { signPdf } from '../signing/sign';
@@ -42,6 +44,21 @@ async function requireGenuine(pdf: Uint8Array, root: string): Promise<void> {
 	if (verdict !== 'genuine') {
 		throw new PermanentJobError(`The signed file would not verify (${verdict}): ${reasons.join(' ')}`);
 	}
+}
+
+/**
+ * A queued job carries no rights of its own: whoever asked for the issue must still be one who may.
+ * @throws PermanentJobError
+ */
+async function requireRightful(issue: Issue, tx: Transaction): Promise<void> {
+	const membership =
+		issue.requestedBy === null
+			? null
+			: await membershipIn({ id: issue.requestedBy }, issue.organisationId, tx);
+	if (can(membership, 'report.issue')) return;
+	throw new PermanentJobError(
+		'Whoever asked for this issue may no longer issue reports here. Another author can ask for it again.'
+	);
 }
 
 /** Author, and who sent, read and approved it. */
@@ -86,6 +103,7 @@ export const reportIssuing: ReportIssuing = {
 		};
 	},
 	async publish(issue, _signed, tx) {
+		await requireRightful(issue, tx);
 		// First, because it takes the organisation's row, which comes before the report's everywhere.
 		await debitExport(tx, issue.organisationId, issue.id);
 		await tx
