@@ -137,6 +137,11 @@ const accountScreens = [
 	{ name: 'reset-dead-link', who: 'nobody', open: at(`/reset/${'x'.repeat(43)}`) },
 	{ name: 'account', who: 'consultant', open: at('/account') },
 	{ name: 'organisation', who: 'consultant', open: at('/organisation') },
+	{ name: 'billing', who: 'consultant', open: at('/billing') },
+	{ name: 'billing-without-plan', who: 'founder', open: at('/billing') },
+	{ name: 'billing-review', who: 'founder', open: at('/billing/review?seats=3&interval=year') },
+	{ name: 'billing-review-fault', who: 'founder', open: at('/billing/review?seats=none&interval=year') },
+	{ name: 'billing-seats', who: 'consultant', open: at('/billing/seats?seats=9') },
 	{ name: 'organisation-new', who: 'newcomer', open: at('/organisation/new') },
 	{
 		name: 'organisation-new-faults',

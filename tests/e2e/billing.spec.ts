@@ -27,7 +27,7 @@ test('an owner subscribes: a declined card, then a good one; then a pack, seats,
 		await page.locator('#seats').fill('3');
 		await page.getByRole('button', { name: 'See what it comes to' }).click();
 		await expect(page.getByRole('heading', { level: 1 })).toHaveText('Take the plan Practice?');
-		await expect(main).toContainText('€72.00 a month');
+		await expect(main).toContainText('€72.00, and the same every month');
 	});
 
 	await test.step('a declined card buys nothing', async () => {

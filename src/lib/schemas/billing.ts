@@ -16,7 +16,5 @@ export const packChoiceSchema = z.object({ packs: count('Give the packs as a who
 /** What is to be bought: the one or the other. */
 export const purchaseSchema = z.union([planChoiceSchema, packChoiceSchema]);
 
-export const seatsSchema = z.object({ seats });
-
 /** `mark` names one decision, so that sending its form twice is one change. */
 export const seatChangeSchema = z.object({ seats, mark: z.uuid() });

@@ -13,7 +13,8 @@ import { counted, dayText } from './sentences';
 export interface ReviewText {
 	title: string;
 	rows: { name: string; value: string }[];
-	total: string;
+	/** The last row, which counts most. */
+	total: { name: string; value: string };
 }
 
 /** @throws like `reviewPurchase` */
@@ -35,7 +36,7 @@ export async function purchaseText(
 				{ name: 'Valid for', value: `${months} months from today; used after a plan’s monthly ones` },
 				{ name: 'Paid', value: 'once' }
 			],
-			total: amount(total)
+			total: { name: 'To pay now', value: amount(total) }
 		};
 	}
 	const { plan, interval, quantity } = purchase;
@@ -48,7 +49,7 @@ export async function purchaseText(
 			{ name: 'Exports', value: `${exports} a month, pooled by the organisation` },
 			{ name: 'Paid', value: `every ${interval}, until it is cancelled; it can be cancelled at any time` }
 		],
-		total: `${amount(total)} a ${interval}`
+		total: { name: 'To pay now', value: `${amount(total)}, and the same every ${interval}` }
 	};
 }
 
@@ -66,7 +67,7 @@ export async function seatsText(
 		title: `Change to ${counted(seats, 'seat')}?`,
 		rows: [
 			{ name: 'Now', value: described(from) },
-			{ name: 'Then', value: described(to) },
+			{ name: 'Changed to', value: described(to) },
 			{
 				name: `This ${interval}`,
 				value:
@@ -76,6 +77,6 @@ export async function seatsText(
 			},
 			{ name: 'Next invoice', value: `${amount(next)} on ${dayText(nextAt)}` }
 		],
-		total: `${amount(each)} a ${interval}`
+		total: { name: 'From then on', value: `${amount(each)} a ${interval}` }
 	};
 }

@@ -34,7 +34,7 @@ export function planText(
 	all: Plans = plans()
 ): string {
 	const { trial } = all;
-	const without = `Without a plan ${counted(trial.seats, 'member')} can work here, and ${counted(trial.exports, 'export')} are there to try.`;
+	const without = `Without a plan ${counted(trial.seats, 'member')} can work here, with ${counted(trial.exports, 'export')} to try, once.`;
 	if (subscription === undefined || access === undefined) return `There is no plan. ${without}`;
 	if (access.standing === 'over' || access.standing === 'run-out') {
 		const end = subscription.endedAt ?? subscription.periodEnd;
