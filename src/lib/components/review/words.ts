@@ -24,6 +24,11 @@ export function counted(count: number, one: string, many = `${one}s`): string {
 	return `${count} ${count === 1 ? one : many}`;
 }
 
+/** For the beginning of a sentence. */
+export function upperFirst(text: string): string {
+	return `${text.charAt(0).toUpperCase()}${text.slice(1)}`;
+}
+
 /** What a reviewer's figure is, in the trade's words. */
 export const figureKinds: Readonly<Record<FigureView['kind'], string>> = {
 	value: 'a value',
