@@ -23,6 +23,15 @@ async function issueAtOnce(page: Page, report: string): Promise<void> {
 	await expect(page.getByRole('link', { name: 'Download the signed PDF' })).toBeVisible({ timeout: 90_000 });
 }
 
+/** Without an address on its letterhead an organisation issues nothing. */
+async function fillLetterhead(page: Page): Promise<void> {
+	await page.goto('/organisation');
+	await settled(page);
+	await page.getByLabel('Postal address').fill('3 Mill Yard\nAldous');
+	await page.getByRole('button', { name: 'Save', exact: true }).click();
+	await expect(page.getByRole('status').first()).toContainText('saved');
+}
+
 /** Another draft on the same result. */
 async function anotherDraft(page: Page, dossier: string): Promise<string> {
 	await page.goto(`${dossier}/reports/new`);
@@ -65,6 +74,7 @@ test('invited, reviewed, paid for, issued, and read by a client on a phone', asy
 	const owner = newcomer();
 	const author = await pageFor(browser);
 	await settleIn(author, owner, `Aldous Surveys ${owner.email}`);
+	await fillLetterhead(author);
 	const report = await test.step('both exports to try are used', async () => {
 		const first = await writeDraft(author);
 		await author.getByRole('link', { name: 'Clay tiles, Upper Row' }).first().click();
