@@ -20,6 +20,7 @@ export default defineConfig({
 						'report-templates/**/*.test.ts',
 						'tests/published/**/*.test.ts',
 						'tests/docs/**/*.test.ts',
+						'tests/permissions/route-tree.test.ts',
 						'stripe-fake/**/*.test.ts'
 					],
 					exclude: ['src/**/*.db.test.ts', 'src/**/*.svelte.test.ts']
@@ -33,6 +34,14 @@ export default defineConfig({
 					include: ['src/**/*.db.test.ts', 'tests/integration/**/*.test.ts'],
 					testTimeout: 60_000,
 					hookTimeout: 120_000
+				}
+			},
+			{
+				extends: './vite.config.ts',
+				test: {
+					name: 'permissions',
+					environment: 'node',
+					include: ['tests/permissions/matrix.test.ts']
 				}
 			},
 			{

@@ -7,7 +7,7 @@ import { dataFolder, ensureFolder } from './lib/paths.mjs';
 import { explain, PlainError } from './lib/plain-error.mjs';
 import { endRunning } from './lib/run.mjs';
 import { checkStage, playwrightStage, programs, vitestStage } from './lib/stages.mjs';
-import { cleanEnvironment, startDatabase, startForBrowser } from './lib/throw-away-service.mjs';
+import { addDatabase, cleanEnvironment, startDatabase, startForBrowser } from './lib/throw-away-service.mjs';
 
 /*
  * `npm test`: sets up everything on a throw-away database, runs every stage whatever the others say, and ends with
@@ -61,20 +61,39 @@ const stages = {
 		await ensureBuild(say);
 		return { passed: 1, failed: 0 };
 	},
-	browser: async (context) => {
-		await ensureBuild(say);
-		if (cluster === undefined) throw new Error('There is no database.');
-		const started = await startForBrowser({
-			databaseUrl: cluster.url,
-			say,
-			onStop: (stop) => void toStop.push(stop),
-			onCrash: (reason) => {
-				if (!ending) console.error(`A part of the service ended during the tests. ${reason}`);
-			}
-		});
-		return await playwrightStage({ ...context, env: { ...context.env, ...started } });
-	}
+	permissions: (context) =>
+		onService(context, 'permissions', (env) => vitestStage('permissions', { ...context, env })),
+	browser: (context) => onService(context, 'browser', (env) => playwrightStage({ ...context, env }))
 };
+
+/**
+ * Runs a stage on a service and a database of its own.
+ * @param {StageContext} context
+ * @param {string} name
+ * @param {(env: NodeJS.ProcessEnv) => Promise<Count>} stage
+ */
+async function onService(context, name, stage) {
+	await ensureBuild(say);
+	if (cluster === undefined) throw new Error('There is no database.');
+	const databaseUrl = await addDatabase(cluster.url, `noonmark_${name}`);
+	/** @type {(() => Promise<void> | void)[]} */
+	const parts = [];
+	const stopAll = async () => {
+		for (const stop of parts.splice(0).reverse()) await stop();
+	};
+	toStop.push(stopAll);
+	const started = await startForBrowser({
+		databaseUrl,
+		say,
+		onStop: (stop) => void parts.push(stop),
+		onCrash: (reason) => {
+			if (!ending) console.error(`A part of the service ended during the tests. ${reason}`);
+		}
+	});
+	const count = await stage({ ...context.env, ...started, SERVICE_DATABASE: databaseUrl });
+	await stopAll();
+	return count;
+}
 
 /** @type {{ url: string } | undefined} */
 let cluster;
@@ -103,7 +122,7 @@ async function main(wanted) {
 	await ensureDependencies(say);
 	const reports = ensureFolder(join(dataFolder, 'test-reports'));
 	const env = cleanEnvironment();
-	if (chosen.some((name) => name === 'integration' || name === 'browser')) {
+	if (chosen.some((name) => ['integration', 'permissions', 'browser'].includes(name))) {
 		cluster = await startDatabase((stop) => void toStop.push(stop));
 		env.TEST_DATABASE_URL = cluster.url;
 	}

@@ -9,6 +9,7 @@ import { redirectToOrigin } from '$lib/server/hooks/loopback';
 import { requestId } from '$lib/server/hooks/request-id';
 import { sameOrigin } from '$lib/server/hooks/same-origin';
 import { securityHeaders } from '$lib/server/hooks/security-headers';
+import { sight } from '$lib/server/hooks/sight';
 
 export const init: ServerInit = () => {
 	if (!building) coverEveryAnswer();
@@ -20,7 +21,8 @@ export const handle = sequence(
 	redirectToOrigin,
 	sameOrigin,
 	authentication,
-	guard
+	guard,
+	sight
 );
 
 export const handleError = reportError;

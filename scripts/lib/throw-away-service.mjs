@@ -35,6 +35,27 @@ export async function startDatabase(onStop) {
 }
 
 /**
+ * An empty database beside the cluster's first one, for a service of its own: what one seals with its keys, another
+ * could not open.
+ * @param {string} clusterUrl
+ * @param {string} name
+ * @returns {Promise<string>} its address
+ */
+export async function addDatabase(clusterUrl, name) {
+	const { default: postgres } = await import('pg');
+	const client = new postgres.Client({ connectionString: clusterUrl });
+	await client.connect();
+	try {
+		await client.query(`create database ${client.escapeIdentifier(name)}`);
+	} finally {
+		await client.end();
+	}
+	const url = new URL(clusterUrl);
+	url.pathname = `/${name}`;
+	return url.href;
+}
+
+/**
  * The whole service on free ports, with what a browser run is told about it. The builds must be there.
  * @param {object} options
  * @param {string} options.databaseUrl

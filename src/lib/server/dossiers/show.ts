@@ -1,6 +1,6 @@
 import type { Listed } from '$lib/lists/query';
 import { calculationList, reportList } from '$lib/lists/shapes';
-import { requireAction } from '../access/can';
+import { requireAction, type Action } from '../access/can';
 import type { Membership } from '../access/membership';
 import { listCalculations, type CalculationRow } from '../calculations/list';
 import { database, type Queryable } from '../db';
@@ -32,7 +32,7 @@ export async function showDossier(
 	return { dossier, calculations, reports, evidence };
 }
 
-/** The dossier alone, as its edit form needs it. */
+/** The dossier alone. */
 export async function openDossier(
 	membership: Membership | null,
 	id: string,
@@ -40,4 +40,19 @@ export async function openDossier(
 ): Promise<Dossier> {
 	requireAction(membership, 'dossier.read');
 	return findDossier(db, membership, id);
+}
+
+/**
+ * The dossier, for a page with a form that makes or changes something in it: whoever sees the dossier but may not do
+ * that is told so before they fill it in.
+ */
+export async function openDossierTo(
+	action: Action,
+	membership: Membership | null,
+	id: string,
+	db: Queryable = database()
+): Promise<Dossier> {
+	const dossier = await openDossier(membership, id, db);
+	requireAction(membership, action);
+	return dossier;
 }

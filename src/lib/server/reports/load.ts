@@ -1,6 +1,6 @@
 import { and, eq, inArray, isNull, sql } from 'drizzle-orm';
 import type { ReportText } from '$lib/report/text';
-import { requireAction } from '../access/can';
+import { requireAction, type Action } from '../access/can';
 import { NotFoundError } from '../access/errors';
 import type { Membership } from '../access/membership';
 import { inReach } from '../access/reach';
@@ -61,6 +61,21 @@ export async function getReport(
 		updatedAt,
 		dossier: row.dossier
 	};
+}
+
+/**
+ * The report, for a page with a form that does something with it: whoever sees the report but may not do that is told
+ * so before they fill it in.
+ */
+export async function getReportTo(
+	action: Action,
+	membership: Membership | null,
+	id: string,
+	db: Queryable = database()
+): Promise<ReportView> {
+	const report = await getReport(membership, id, db);
+	requireAction(membership, action);
+	return report;
 }
 
 export interface RunChoice {

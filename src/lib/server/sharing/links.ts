@@ -128,8 +128,8 @@ export async function listShareLinks(
 	reportId: string,
 	db: Queryable = database()
 ): Promise<ShareLinkRow[]> {
-	requireAction(membership, 'report.share');
 	const report = await getReport(membership, reportId, db);
+	requireAction(membership, 'report.share');
 	return db
 		.select({
 			id: shareLinks.id,

@@ -1,7 +1,6 @@
 import { error, redirect } from '@sveltejs/kit';
 import { dossierInput, startedFrom } from '$lib/schemas/dossier';
-import { requireAction } from '$lib/server/access/can';
-import { openDossier } from '$lib/server/dossiers/show';
+import { openDossierTo } from '$lib/server/dossiers/show';
 import { updateDossier } from '$lib/server/dossiers/update';
 import { orHttpError } from '$lib/server/http/errors';
 import { orFormFault, readForm, typedValues } from '$lib/server/http/forms';
@@ -9,11 +8,7 @@ import type { Actions, PageServerLoad } from './$types';
 
 export const load: PageServerLoad = async ({ locals, params }) => {
 	const { id, version, ...fields } = await orHttpError(
-		(async () => {
-			const dossier = await openDossier(locals.membership, params.id);
-			requireAction(locals.membership, 'dossier.write');
-			return dossier;
-		})()
+		openDossierTo('dossier.write', locals.membership, params.id)
 	);
 	return { id, version, values: dossierInput.parse(fields) };
 };

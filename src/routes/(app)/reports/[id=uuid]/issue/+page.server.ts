@@ -4,14 +4,14 @@ import { NoExportsError } from '$lib/server/billing/errors';
 import { orHttpError } from '$lib/server/http/errors';
 import { orFormFault } from '$lib/server/http/forms';
 import { dutiesOf, issueOf, issueReport } from '$lib/server/reports/issue';
-import { getReport, runChoices } from '$lib/server/reports/load';
+import { getReportTo, runChoices } from '$lib/server/reports/load';
 import { placeLink } from '$lib/server/reports/places';
 import { reviewOf } from '$lib/server/reviews/state';
 import type { Actions, PageServerLoad } from './$types';
 
 export const load: PageServerLoad = async ({ locals, params }) => {
 	const { membership } = locals;
-	const report = await orHttpError(getReport(membership, params.id));
+	const report = await orHttpError(getReportTo('report.issue', membership, params.id));
 	const issue = await orHttpError(issueOf(membership, report));
 	if (issue !== null && issue.state !== 'failed') redirect(303, `/reports/${params.id}`);
 	const runs = await orHttpError(runChoices(membership, report.dossier.id, report.runIds));

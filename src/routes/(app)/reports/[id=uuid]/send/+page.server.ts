@@ -3,7 +3,7 @@ import { can } from '$lib/server/access/can';
 import { orHttpError } from '$lib/server/http/errors';
 import { orFormFault, textOf, typedValues, type FormFault } from '$lib/server/http/forms';
 import { dutiesOf } from '$lib/server/reports/issue';
-import { getReport, runChoices } from '$lib/server/reports/load';
+import { getReportTo, runChoices } from '$lib/server/reports/load';
 import { placeLink } from '$lib/server/reports/places';
 import { sendForReview } from '$lib/server/reviews/send';
 import { reviewersFor, reviewOf } from '$lib/server/reviews/state';
@@ -11,9 +11,8 @@ import type { Actions, PageServerLoad } from './$types';
 
 export const load: PageServerLoad = async ({ locals, params }) => {
 	const { membership } = locals;
-	// First, since it is what refuses those who may not write.
+	const report = await orHttpError(getReportTo('report.write', membership, params.id));
 	const choices = await orHttpError(reviewersFor(membership, params.id));
-	const report = await orHttpError(getReport(membership, params.id));
 	const review = await orHttpError(reviewOf(membership, params.id));
 	if (!review.maySend) redirect(303, `/reports/${params.id}`);
 	const runs = await orHttpError(runChoices(membership, report.dossier.id, report.runIds));

@@ -1,12 +1,12 @@
 import { redirect } from '@sveltejs/kit';
 import { createCalculation } from '$lib/server/calculations/change';
-import { openDossier } from '$lib/server/dossiers/show';
+import { openDossierTo } from '$lib/server/dossiers/show';
 import { orHttpError } from '$lib/server/http/errors';
 import { orFormFault, typedValues } from '$lib/server/http/forms';
 import type { Actions, PageServerLoad } from './$types';
 
 export const load: PageServerLoad = async ({ locals, params }) => ({
-	dossier: await orHttpError(openDossier(locals.membership, params.id))
+	dossier: await orHttpError(openDossierTo('calculation.write', locals.membership, params.id))
 });
 
 export const actions: Actions = {

@@ -1,5 +1,5 @@
 import { redirect } from '@sveltejs/kit';
-import { openDossier } from '$lib/server/dossiers/show';
+import { openDossierTo } from '$lib/server/dossiers/show';
 import { orHttpError } from '$lib/server/http/errors';
 import { orFormFault, typedValues } from '$lib/server/http/forms';
 import { createReport } from '$lib/server/reports/change';
@@ -7,7 +7,7 @@ import { runChoices } from '$lib/server/reports/load';
 import type { Actions, PageServerLoad } from './$types';
 
 export const load: PageServerLoad = async ({ locals, params, url }) => {
-	const dossier = await orHttpError(openDossier(locals.membership, params.id));
+	const dossier = await orHttpError(openDossierTo('report.write', locals.membership, params.id));
 	const wanted = url.searchParams.get('run');
 	const runs = await orHttpError(runChoices(locals.membership, params.id, []));
 	return {
