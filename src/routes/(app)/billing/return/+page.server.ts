@@ -13,7 +13,7 @@ export const load: PageServerLoad = async ({ locals, url }) => {
 		// Paid or not, it is found out without the buyer: by the event, or by the daily comparison.
 		if (!(cause instanceof PaymentsAwayError)) throw cause;
 	}
-	const outcome = back?.outcome ?? 'away';
+	const outcome = back?.outcome ?? ('away' as const);
 	if (outcome === 'done') redirect(303, `/billing?done=${back?.kind === 'pack' ? 'pack' : 'plan'}`);
 	return { outcome };
 };
