@@ -1,6 +1,7 @@
 import { fail, redirect } from '@sveltejs/kit';
 import { can } from '$lib/server/access/can';
 import { NoExportsError } from '$lib/server/billing/errors';
+import { exportsSentence } from '$lib/server/billing/overview';
 import { orHttpError } from '$lib/server/http/errors';
 import { orFormFault } from '$lib/server/http/forms';
 import { dutiesOf, issueOf, issueReport } from '$lib/server/reports/issue';
@@ -30,6 +31,7 @@ export const load: PageServerLoad = async ({ locals, params }) => {
 		reviewFirst:
 			approved === null && (review.secondReaderWanted || state === 'in-review' || state === 'returned'),
 		maySend: review.maySend,
+		exports: await orHttpError(exportsSentence(membership)),
 		mayPay: can(membership, 'billing.manage')
 	};
 };
