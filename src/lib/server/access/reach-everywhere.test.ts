@@ -20,7 +20,8 @@ const loaders = [
 	'getRun',
 	'getReport',
 	'runsOf',
-	'findComment'
+	'findComment',
+	'holdReport'
 ];
 
 /** `file function`, and why it need not. */

@@ -1,4 +1,4 @@
-import { and, asc, eq, isNull, sql } from 'drizzle-orm';
+import { and, asc, eq, gt, isNull, sql } from 'drizzle-orm';
 import { storable } from '$lib/calculation/storable';
 import { reportLines, wholeLine, type ReportLine } from '$lib/report';
 import { recordAudit } from '../access/audit';
@@ -12,7 +12,9 @@ import { reports, reviewComments } from '../db/schema';
 import { issueOf } from '../reports/issue';
 import { getReport, type ReportView } from '../reports/load';
 import { coveredBy } from './approval';
+import { holdReport } from './hold';
 import { namesOf } from './people';
+import { presentPlaces } from './present-place';
 import { latestRound } from './rounds';
 import type { CommentView } from './types';
 import { stateWords } from './words';
@@ -75,11 +77,27 @@ export async function addComment(
 async function insert(
 	membership: Membership,
 	report: ReportView,
-	given: Pick<typeof reviewComments.$inferInsert, 'place' | 'quoted' | 'body' | 'answers'>,
+	given: { place: string; quoted: string; body: string; answers: string | null },
 	db: Database
 ): Promise<string> {
 	await limit(`review-comment:${membership.userId}`, 60, 600, db);
 	return db.transaction(async (tx) => {
+		// One at a time on a report, so that of a form sent twice the second finds the first.
+		await holdReport(tx, membership, report);
+		const [said] = await tx
+			.select({ id: reviewComments.id })
+			.from(reviewComments)
+			.where(
+				and(
+					eq(reviewComments.reportId, report.id),
+					eq(reviewComments.writtenBy, membership.userId),
+					eq(reviewComments.place, given.place),
+					eq(reviewComments.body, given.body),
+					given.answers === null ? isNull(reviewComments.answers) : eq(reviewComments.answers, given.answers),
+					gt(reviewComments.writtenAt, sql`now() - interval '10 minutes'`)
+				)
+			);
+		if (said !== undefined) return said.id;
 		const round = await latestRound(report, tx);
 		const [row] = await tx
 			.insert(reviewComments)
@@ -193,12 +211,17 @@ export async function commentsOf(
 	const ids = rows.flatMap(({ writtenBy, settledBy }) => [writtenBy, settledBy]);
 	const person = await namesOf(organisationId, dossierId, ids, db);
 	const now = new Map(lines.map((line) => [line.place, quotation(line)]));
+	const placeNow = await presentPlaces(
+		report,
+		rows.map(({ place }) => place),
+		db
+	);
 	const views = rows.map((row): CommentView & { answersTo: string | null } => ({
 		id: row.id,
-		place: row.place,
+		place: placeNow(row.place),
 		round: row.round,
 		quoted: row.quoted,
-		lineChanged: now.get(row.place) !== row.quoted,
+		lineChanged: now.get(placeNow(row.place)) !== row.quoted,
 		body: row.body,
 		writtenBy: person(row.writtenBy),
 		writtenAt: row.writtenAt,

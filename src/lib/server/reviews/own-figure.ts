@@ -85,6 +85,10 @@ async function requireFits(given: FigureInput, run: LoadedRun | undefined): Prom
 	}
 }
 
+const figureFields = ['runId', 'output', 'kind', 'value', 'unit', 'giveOrTake', 'averages', 'route'] as const;
+
+const sameFigure = (given: FigureInput) => figureFields.map((name) => eq(reviewerFigures[name], given[name]));
+
 /** Figures are part of what is reviewed: they are entered and taken back while it is. */
 async function requireReviewing(
 	tx: Transaction,
@@ -129,6 +133,20 @@ export async function enterFigure(
 			input,
 			runs.find(({ run }) => run.id === input.runId)
 		);
+		// A form that is sent twice enters one figure: the report's row is held, so the second finds the first.
+		const [entered] = await tx
+			.select({ id: reviewerFigures.id })
+			.from(reviewerFigures)
+			.where(
+				and(
+					eq(reviewerFigures.reportId, report.id),
+					eq(reviewerFigures.revision, report.revision),
+					eq(reviewerFigures.enteredBy, membership.userId),
+					isNull(reviewerFigures.withdrawnAt),
+					...sameFigure(input)
+				)
+			);
+		if (entered !== undefined) return entered.id;
 		const [row] = await tx
 			.insert(reviewerFigures)
 			.values({

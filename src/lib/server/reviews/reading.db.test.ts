@@ -76,6 +76,8 @@ describe('the review page', () => {
 
 	it('shows what changed since the reviewer decided last, also where it was computed anew', async () => {
 		const id = await world.sent();
+		const remarked = `run:${world.runId}/input:solarReflectance`;
+		await addComment(world.reviewer, id, { place: remarked, body: 'New or aged?' }, db);
 		await returnReport(world.reviewer, id, { reasons: 'The reflectance is for a new tile.' }, db);
 		const { draft, version } = await getCalculation(world.author, world.calculationId, db);
 		const before = draft.assumptions.solarReflectance;
@@ -97,6 +99,9 @@ describe('the review page', () => {
 		expect(changed.has(`run:${runId}/input:thermalEmittance`)).toBe(false);
 		expect(changed.has('report.title')).toBe(false);
 		expect(view.gone).toEqual([]);
+		// The remark is on the same assumption of the later run.
+		const line = view.lines.find(({ place }) => place === `run:${runId}/input:solarReflectance`);
+		expect(line?.comments).toMatchObject([{ body: 'New or aged?', lineChanged: true }]);
 	});
 });
 
@@ -126,6 +131,22 @@ describe('remarks', () => {
 		expect(again?.settledBy).toEqual(first?.settledBy);
 		await unsettleComment(world.author, remark, db);
 		expect((await listComments(world.author, id, db))[0]?.settledAt).toBeNull();
+	});
+
+	it('are kept once where a form is sent twice, and twice where somebody means it', async () => {
+		const id = await world.sent();
+		const given = { place: 'text.answer', body: 'Which year?' };
+		const sent = await Promise.all([1, 2, 3].map(() => addComment(world.reviewer, id, given, db)));
+		expect(new Set(sent).size).toBe(1);
+		await addComment(world.reviewer, id, { ...given, body: 'And which place?' }, db);
+		await addComment(world.guest, id, given, db);
+		expect(await listComments(world.author, id, db)).toHaveLength(3);
+		await db
+			.update(reviewComments)
+			.set({ writtenAt: new Date(Date.now() - 3_600_000) })
+			.where(eq(reviewComments.reportId, id));
+		await addComment(world.reviewer, id, given, db);
+		expect(await listComments(world.author, id, db)).toHaveLength(4);
 	});
 
 	it('say that their line changed, and stay when it is gone', async () => {
@@ -189,6 +210,15 @@ describe('a reviewer’s own figure', () => {
 			{ withdrawnAt: expect.any(Date) as Date, mayWithdraw: false }
 		]);
 		expect(await db.$count(reviewerFigures, eq(reviewerFigures.reportId, id))).toBe(1);
+	});
+
+	it('is entered once where a form is sent twice, and again once it was taken back', async () => {
+		const id = await world.sent();
+		const entered = await Promise.all([1, 2].map(() => enterFigure(world.reviewer, id, figure(), db)));
+		expect(new Set(entered).size).toBe(1);
+		await withdrawFigure(world.reviewer, entered[0] ?? '', db);
+		expect(entered).not.toContain(await enterFigure(world.reviewer, id, figure(), db));
+		expect(await listFigures(world.author, id, db)).toHaveLength(2);
 	});
 
 	it('is refused by field where it cannot stand beside the result', async () => {
