@@ -1,4 +1,4 @@
-import { existsSync, rmSync, statSync } from 'node:fs';
+import { existsSync, lstatSync, rmSync, statSync } from 'node:fs';
 import { join } from 'node:path';
 import { root } from './paths.mjs';
 import { PlainError } from './plain-error.mjs';
@@ -22,6 +22,10 @@ export async function ensureDependencies(say) {
 	// npm writes this one last.
 	const installed = join(root, 'node_modules', '.package-lock.json');
 	if (existsSync(installed) && statSync(installed).mtimeMs >= statSync(lock).mtimeMs) return;
+	// npm empties the folder first, and would do so through a link, in somebody else's checkout.
+	if (lstatSync(join(root, 'node_modules'), { throwIfNoEntry: false })?.isSymbolicLink()) {
+		throw new PlainError('node_modules is a link to another folder. Remove the link and start again.');
+	}
 	say('Installing the packages of package-lock.json …');
 	const env = { ...process.env, NODE_ENV: 'development' };
 	const result = await run('npm', ['ci', '--include=dev', '--no-audit', '--no-fund', '--loglevel=error'], {

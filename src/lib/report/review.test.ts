@@ -64,6 +64,11 @@ describe('a reviewer’s figure', () => {
 		expect(said({ value: '249.05', unit: 'K' })).toContain('At the digits printed');
 		expect(said({ value: '249.5', unit: 'K' })).toContain('within');
 		expect(said({}, { value: 249, unit: 'K' })).toContain('No interval of the result was worked out');
+		const exact = { ...output, interval: { ...output.interval, low: 249.05, high: 249.05 } } as OutputResult;
+		expect(said({}, exact)).toContain('No interval of the result was worked out');
+		expect(said({ kind: 'upper-bound', unit: 'K', value: '260' }, exact)).toBe(
+			'The result lies below the reviewer’s upper bound.'
+		);
 	});
 
 	it('of another or an unknown average is not compared', () => {

@@ -84,14 +84,19 @@ export function figureNumbers(
 	}
 }
 
+/** Where every input is exact the interval has no width, and says nothing. */
+const intervalOf = ({ interval }: OutputResult) =>
+	interval && interval.high > interval.low ? interval : null;
+
 function valueSentence(numbers: Numbers, output: OutputResult, scale: TemperatureScale): string {
 	const by = numbers.value - (output.mean ?? output.value);
 	const distance = presentDifference(Math.abs(by), output.unit, output.standardUncertainty, scale).value;
 	const where = /[1-9]/.test(distance)
 		? `The reviewer’s figure lies ${distance} ${by > 0 ? 'above' : 'below'} the result.`
 		: 'At the digits printed, the reviewer’s figure does not differ from the result.';
-	if (!output.interval) return `${where} No interval of the result was worked out to hold it against.`;
-	const { low, high, coverage } = output.interval;
+	const found = intervalOf(output);
+	if (found === null) return `${where} No interval of the result was worked out to hold it against.`;
+	const { low, high, coverage } = found;
 	const interval = `the result’s ${percent(coverage)} coverage interval`;
 	if (numbers.giveOrTake > 0) {
 		const meets = numbers.value + numbers.giveOrTake >= low && numbers.value - numbers.giveOrTake <= high;
@@ -107,8 +112,8 @@ function boundSentence(kind: 'upper-bound' | 'lower-bound', bound: number, outpu
 	const keeps = (number: number): boolean => (upper ? number <= bound : number >= bound);
 	const side = upper ? 'below' : 'above';
 	if (!keeps(output.mean ?? output.value)) return `The result does not lie ${side} ${name}.`;
-	const { interval } = output;
-	if (!interval) return `The result lies ${side} ${name}.`;
+	const interval = intervalOf(output);
+	if (interval === null) return `The result lies ${side} ${name}.`;
 	return keeps(upper ? interval.high : interval.low)
 		? `The result lies ${side} ${name}, with its whole ${percent(interval.coverage)} coverage interval.`
 		: `The result lies ${side} ${name}; its ${percent(interval.coverage)} coverage interval reaches past it.`;
