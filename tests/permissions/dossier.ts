@@ -62,7 +62,8 @@ export async function makeDossier(
 	await sendForReview(author, inReview, sending, db);
 	const remark = { place: 'text.answer', body: `Is ${mark} meant?` };
 	const comment = await addComment(reviewer, inReview, remark, db);
-	const settledComment = await addComment(reviewer, inReview, remark, db);
+	const settled = { ...remark, body: `And of ${mark}?` };
+	const settledComment = await addComment(reviewer, inReview, settled, db);
 	await settleComment(author, settledComment, db);
 	const figure = await enterFigure(reviewer, inReview, ownFigure(run), db);
 	const approved = await makeReport(db, author, dossier, run, mark);
