@@ -35,10 +35,13 @@ const sentences = (parts: readonly (string | null)[]): string =>
 		.filter(Boolean)
 		.join('\n');
 
+const capital = (text: string): string => text.charAt(0).toUpperCase() + text.slice(1);
+
 function assumptionLine(run: RunModel, row: AssumptionRow, references: readonly Citation[]): ReportLine {
 	const source = [
 		row.uncertainty ? `Standard uncertainty ${row.uncertainty}, ${row.distribution}` : row.distribution,
-		cited(row.source, references),
+		// What a page shows as a number in brackets stands here in full.
+		cited(row.source, references).replace(/^(published|method’s default) (?=\S)/, '$1: '),
 		row.note && `Note: ${row.note}`
 	];
 	return {
@@ -46,7 +49,7 @@ function assumptionLine(run: RunModel, row: AssumptionRow, references: readonly 
 		section: run.title,
 		label: row.name,
 		text: row.inOwnUnit ? `${row.value} (that is ${row.inOwnUnit})` : row.value,
-		source: source.filter(Boolean).join('. ')
+		source: source.filter(Boolean).map(capital).join('. ')
 	};
 }
 
