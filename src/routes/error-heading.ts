@@ -1,6 +1,6 @@
 const headings: Readonly<Record<number, string>> = {
 	401: 'Please sign in first.',
-	403: 'Your role does not allow this.',
+	403: 'You may not do this.',
 	404: 'There is nothing here.',
 	409: 'This has changed in the meantime.',
 	410: 'This link no longer works.',

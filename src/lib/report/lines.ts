@@ -232,9 +232,11 @@ export function compareLines(
 /** What differs between two models, in words for a sentence: "the addressee", "the title"; empty where no line does. */
 export function changedPlaces(now: ReportModel, before: ReportModel): string[] {
 	const { lines, gone } = compareLines(reportLines(now), reportLines(before));
-	const own = (line: ReportLine): string =>
-		/^(run|evidence):/.test(line.place)
-			? `“${line.label}” of “${line.section}”`
-			: `the ${line.label.charAt(0).toLowerCase()}${line.label.slice(1)}`;
+	const own = ({ place, label, section }: ReportLine): string => {
+		if (/^(run|evidence):/.test(place)) return `“${label}” of “${section}”`;
+		const inside = `${label.charAt(0).toLowerCase()}${label.slice(1)}`;
+		// "Who may rely on it" is a clause, no thing.
+		return inside.startsWith('who ') ? inside : `the ${inside}`;
+	};
 	return [...lines.filter((line) => line.changed !== null), ...gone].map(own);
 }

@@ -4,7 +4,7 @@ import type { FigureView, ReviewPerson } from '$lib/server/reviews/types';
 /** A person in a sentence. */
 export function nameOf(person: ReviewPerson | null): string {
 	if (person === null) return 'a former member';
-	return person.guest ? `${person.name}, guest` : person.name;
+	return person.guest ? `${person.name} (guest)` : person.name;
 }
 
 /** "Colm Hadley", "Colm Hadley and Runa Aldous", "Colm Hadley, Runa Aldous and Idris Venn". */
