@@ -65,7 +65,7 @@ async function send(author: Page, report: string, reviewer: Newcomer): Promise<v
 
 /** Follows the link of the newest mail to the reviewer. */
 async function openReview(reader: Page, reviewer: Newcomer): Promise<void> {
-	await reader.goto(await mailedPath(reader, reviewer.email, /\/review$/));
+	await reader.goto(await mailedPath(reader, reviewer.email, /\/review\?/));
 	await settled(reader);
 }
 

@@ -79,7 +79,7 @@ test('a report is remarked on, returned, mended, approved and printed with what 
 	await expect(reader.getByRole('alert')).toBeVisible();
 	await expect(reader.getByLabel('By which route?')).toHaveValue('White tile of the same table, by hand');
 	await reader.getByLabel('Value', { exact: true }).fill('45');
-	await reader.getByLabel('What does it average?').fill('the new tile, at one instant');
+	await reader.getByLabel('What else does it average?').fill('the new tile, at one instant');
 	await reader.getByRole('button', { name: 'Enter the figure' }).click();
 	await expect(reader.getByRole('main')).toContainText('White tile of the same table, by hand');
 

@@ -1,5 +1,5 @@
 import { eq } from 'drizzle-orm';
-import type Stripe from 'stripe';
+import Stripe from 'stripe';
 import { recordAudit } from '../access/audit';
 import { requireAction } from '../access/can';
 import { ConflictError, InvalidInputError } from '../access/errors';
@@ -25,10 +25,16 @@ interface Change {
 	interval: Interval;
 	items: { id: string; price: string; quantity: number }[];
 	/**
-	 * Further seats are charged from today on. Fewer seats count at once, and nothing is paid back for the running
-	 * period: their exports of this month were given in full.
+	 * Further seats are charged from today on: on the next invoice of a monthly plan; at once on a yearly one, where
+	 * they would otherwise be used for up to a year before they are paid for. Fewer seats count at once, and nothing is
+	 * paid back for the running period: their exports of this month were given in full.
 	 */
-	proration: 'create_prorations' | 'none';
+	proration: 'create_prorations' | 'always_invoice' | 'none';
+}
+
+function prorationOf(added: boolean, interval: Interval): Change['proration'] {
+	if (!added) return 'none';
+	return interval === 'year' ? 'always_invoice' : 'create_prorations';
 }
 
 async function planChange(organisationId: string, seats: number, db: Database): Promise<Change> {
@@ -64,7 +70,7 @@ async function planChange(organisationId: string, seats: number, db: Database): 
 		after,
 		interval: subscription.interval,
 		items: [{ id: subscription.itemId, price: price.id, quantity: seats }],
-		proration: seats > subscription.quantity ? 'create_prorations' : 'none'
+		proration: prorationOf(seats > subscription.quantity, subscription.interval)
 	};
 }
 
@@ -74,7 +80,9 @@ export interface SeatPreview {
 	interval: Interval;
 	/** What the change itself costs for the rest of the running period; 0 for fewer seats. */
 	now: number;
-	/** Total of the next invoice, the change included. */
+	/** Whether that is charged when the change is made, and not with the next invoice. */
+	atOnce: boolean;
+	/** Total of the next regular invoice, with what waits for it. */
 	next: number;
 	nextAt: Date;
 	/** What every further period costs. */
@@ -113,14 +121,18 @@ export async function previewSeats(
 	// Earlier changes wait for the same invoice; this one's lines begin at its own instant.
 	const ofThis = (line: Stripe.InvoiceLineItem) =>
 		proration !== 'none' && isProration(line) && line.period.start === changedAt;
+	const atOnce = proration === 'always_invoice';
+	const each = after.seatPrice[interval] * seats;
 	return {
 		from: { seats: subscription.quantity, plan: before?.name ?? 'unknown' },
 		to: { seats, plan: after.name },
 		interval,
 		now: invoice.lines.data.filter(ofThis).reduce((sum, { amount }) => sum + amount, 0),
-		next: invoice.total,
+		atOnce,
+		// What is charged at once leaves nothing to wait for the renewal.
+		next: atOnce ? each : invoice.total,
 		nextAt: subscription.periodEnd,
-		each: after.seatPrice[interval] * seats,
+		each,
 		currency: invoice.currency
 	};
 }
@@ -129,7 +141,7 @@ export async function previewSeats(
  * Sets the number of seats, with the plan that it belongs to.
  * @param mark names this one decision, so that sending its form twice is one change
  * @throws InvalidInputError for a number that no plan has or the members do not fit in; ConflictError while there is no
- * plan, or one that is cancelled or owes
+ * plan, or one that is cancelled or owes, and where the card is declined
  */
 export async function changeSeats(
 	membership: Membership | null,
@@ -150,7 +162,12 @@ export async function changeSeats(
 		requireSeats(after, seats, taken, plans());
 		await stripe().subscriptions.update(
 			subscription.id,
-			{ items, proration_behavior: proration },
+			{
+				items,
+				proration_behavior: proration,
+				// A card that is declined leaves everything as it was.
+				...(proration === 'always_invoice' ? { payment_behavior: 'error_if_incomplete' as const } : {})
+			},
 			{ idempotencyKey: `seats:${organisationId}:${mark}:${seats}` }
 		);
 		await syncSubscription(tx, organisationId, subscription.customerId, subscription.id);
@@ -160,5 +177,10 @@ export async function changeSeats(
 			plan: after.id
 		});
 	});
-	await orAway(change);
+	await orAway(change).catch((cause: unknown) => {
+		if (!(cause instanceof Stripe.errors.StripeCardError)) throw cause;
+		throw new ConflictError(
+			'The card was declined, so nothing was changed and nothing was paid. Change the card in the customer portal, then try again.'
+		);
+	});
 }

@@ -52,8 +52,12 @@ const subscriptionOf = async (membership: Membership) =>
 		await db.select().from(subscriptions).where(eq(subscriptions.organisationId, membership.organisationId))
 	)[0];
 
-async function subscribe(membership: Membership, seats = 3): Promise<void> {
-	await pay(await startCheckout(membership, { ...practice, seats }, db));
+async function subscribe(
+	membership: Membership,
+	seats = 3,
+	interval: 'month' | 'year' = 'month'
+): Promise<void> {
+	await pay(await startCheckout(membership, { ...practice, seats, interval }, db));
 	await shop.settle();
 }
 
@@ -258,6 +262,26 @@ describe('seats', () => {
 		expect((await exportsLeft(owner.organisationId, db)).left).toBe(210);
 		await shop.settle();
 		expect(await seatsOf(owner.organisationId, db)).toEqual({ taken: 1, limit: 5 });
+	});
+
+	it('that are added to a yearly plan are charged at once, or not added', async () => {
+		await subscribe(owner, 3, 'year');
+		expect(await previewSeats(owner, 5, db)).toMatchObject({ atOnce: true, each: 120_000, next: 120_000 });
+		await changeSeats(owner, 5, 'one', db);
+		const subscription = await subscriptionOf(owner);
+		expect(subscription).toMatchObject({ quantity: 5 });
+		const paid = await db.select().from(invoices).where(eq(invoices.organisationId, owner.organisationId));
+		expect(paid).toHaveLength(2);
+		expect(paid.every(({ status }) => status === 'paid')).toBe(true);
+		expect(paid.reduce((sum, { total }) => sum + total, 0)).toBeGreaterThan(119_000);
+
+		if (subscription === undefined) throw new Error('no subscription');
+		const customer = subscription.customerId;
+		const bad = await stripe().paymentMethods.attach('pm_card_chargeCustomerFail', { customer });
+		await stripe().subscriptions.update(subscription.id, { default_payment_method: bad.id });
+		await expect(changeSeats(owner, 9, 'two', db)).rejects.toThrow('The card was declined');
+		expect(await subscriptionOf(owner)).toMatchObject({ quantity: 5 });
+		expect((await stripe().subscriptions.retrieve(subscription.id)).items.data[0]?.quantity).toBe(5);
 	});
 
 	it('are never fewer than the members, nor changed without a plan', async () => {

@@ -16,6 +16,8 @@ export interface BillingOverview {
 	notices: Notice[];
 	/** A subscription that is not over: its seats can be changed, and no second one bought. */
 	isSubscribed: boolean;
+	/** It runs on: seats of a cancelled one stay as they are. */
+	seatsChangeable: boolean;
 	/** There is something to manage in the customer portal. */
 	hasCustomer: boolean;
 	seats: { taken: number; limit: number };
@@ -82,6 +84,10 @@ export async function billingOverview(
 		plan: planText(subscription, access),
 		notices: planNotices(subscription, access, seats),
 		isSubscribed: subscription !== undefined && !terminalStatuses.has(subscription.status),
+		seatsChangeable:
+			subscription !== undefined &&
+			!terminalStatuses.has(subscription.status) &&
+			!subscription.cancelAtPeriodEnd,
 		hasCustomer: (await customerOf(organisationId, db)) !== null,
 		seats,
 		exports: {

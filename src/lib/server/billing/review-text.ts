@@ -59,7 +59,11 @@ export async function seatsText(
 	seats: number,
 	db: Database = database()
 ): Promise<ReviewText> {
-	const { from, to, interval, now, next, nextAt, each, currency } = await previewSeats(membership, seats, db);
+	const { from, to, interval, now, atOnce, next, nextAt, each, currency } = await previewSeats(
+		membership,
+		seats,
+		db
+	);
 	const amount = (minor: number) => amountText(minor, currency);
 	const described = ({ seats: count, plan }: { seats: number; plan: string }) =>
 		`${plan} with ${counted(count, 'seat')}`;
@@ -72,7 +76,7 @@ export async function seatsText(
 				name: `This ${interval}`,
 				value:
 					seats > from.seats
-						? `about ${amount(now)} for the rest of it, on the next invoice`
+						? `about ${amount(now)} for the rest of it, ${atOnce ? 'charged to the card at once' : 'on the next invoice'}`
 						: 'nothing is paid back; the exports of this month stay'
 			},
 			{ name: 'Next invoice', value: `${amount(next)} on ${dayText(nextAt)}` }

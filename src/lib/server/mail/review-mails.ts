@@ -8,10 +8,15 @@ export interface ReportFacts {
 	name: string;
 	title: string;
 	organisation: string;
+	/** The person may act in another one when they follow the link. */
+	organisationId: string;
 }
 
 const guestNote =
 	'You were asked as somebody from outside the organisation: signing in shows you this dossier and nothing else.';
+
+const pageOf = ({ id, organisationId }: ReportFacts, part = ''): string =>
+	linkTo(`/reports/${id}${part}?organisation=${organisationId}`);
 
 /** To those asked to review. */
 export function reviewAskedMail(
@@ -27,7 +32,7 @@ export function reviewAskedMail(
 			...(asked.note === '' ? [] : [`${asked.by} asks you to look at this: ${asked.note}`]),
 			...(asked.guest ? [guestNote] : [])
 		],
-		{ label: 'Review this report', href: linkTo(`/reports/${report.id}/review`) }
+		{ label: 'Review this report', href: pageOf(report, '/review') }
 	);
 }
 
@@ -44,7 +49,7 @@ export function reviewReturnedMail(
 			`${decision.by} returned the report “${report.title}” (${report.name}). The remarks stand beside its lines:`,
 			`The reasons: ${decision.statement}`
 		],
-		{ label: 'See the remarks', href: linkTo(`/reports/${report.id}/review`) }
+		{ label: 'See the remarks', href: pageOf(report, '/review') }
 	);
 }
 
@@ -62,7 +67,7 @@ export function reviewApprovedMail(
 			`The statement: ${decision.statement}`,
 			'The approval covers the report as it stands. Where anything that it prints is changed before the issue, the approval is void.'
 		],
-		{ label: 'Open the report', href: linkTo(`/reports/${report.id}`) }
+		{ label: 'Open the report', href: pageOf(report) }
 	);
 }
 
@@ -76,7 +81,7 @@ export function approvalVoidMail(to: Recipient, report: ReportFacts, reason: str
 			reason,
 			'To be issued it has to be sent for review once more.'
 		],
-		{ label: 'Open the report', href: linkTo(`/reports/${report.id}`) }
+		{ label: 'Open the report', href: pageOf(report) }
 	);
 }
 
@@ -89,6 +94,6 @@ export function reportIssuedMail(to: Recipient, report: ReportFacts, code: strin
 			`The report “${report.title}” (${report.name}) of ${report.organisation} was issued and signed. It is kept here:`,
 			`Its verification code is ${code}. Anybody who has the file can check it: ${linkTo('/verify')}`
 		],
-		{ label: 'Open the report', href: linkTo(`/reports/${report.id}`) }
+		{ label: 'Open the report', href: pageOf(report) }
 	);
 }

@@ -56,7 +56,9 @@ async function reportOf(notice: Notice, db: Queryable): Promise<About | undefine
 		);
 	if (row === undefined) return undefined;
 	const { id, number, revision, title, dossierId, organisation } = row;
-	return { report: { id, name: `${number}, revision ${revision}`, title, organisation }, dossierId };
+	const { organisationId } = notice;
+	const report = { id, name: `${number}, revision ${revision}`, title, organisation, organisationId };
+	return { report, dossierId };
 }
 
 /** What the person may see now, whatever they could when the notice was written. */

@@ -242,8 +242,11 @@ describe('notices', () => {
 			Array.from({ length: 2 }, () => `Please review ${number}, revision 1`)
 		);
 		for (const { text, html, messageId } of asked) {
-			expect(text).toContain(`https://noonmark.example/reports/${id}/review`);
-			expect(html).toContain(`href="https://noonmark.example/reports/${id}/review"`);
+			expect(text).toContain(`https://noonmark.example/reports/${id}/review?organisation=`);
+			const { organisationId } = world.author;
+			expect(html).toContain(
+				`href="https://noonmark.example/reports/${id}/review?organisation=${organisationId}"`
+			);
 			expect(text).toContain('Look at the emittance.');
 			expect(messageId).toMatch(/^<[0-9a-f-]{36}@noonmark\.example>$/);
 		}

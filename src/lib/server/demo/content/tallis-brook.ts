@@ -99,7 +99,7 @@ export const tallisBrookWork: readonly DemoDossier[] = [
 						value: '75',
 						unit: '',
 						giveOrTake: '',
-						averages: 'one flat, insulated surface under the Sun of the standard, at one moment',
+						averages: 'one site, at one instant',
 						route: 'Read off the printed table of the maker for a sheet that is a step darker than this one.'
 					},
 					decision: {

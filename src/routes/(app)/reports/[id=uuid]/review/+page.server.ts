@@ -6,7 +6,7 @@ import { idIn, requireId } from '$lib/server/http/ids';
 import { requestPreview } from '$lib/server/reports/preview';
 import { addComment, answerComment, settleComment, unsettleComment } from '$lib/server/reviews/comments';
 import { returnReport } from '$lib/server/reviews/decide';
-import { enterFigure, withdrawFigure } from '$lib/server/reviews/own-figure';
+import { enterFigure, withdrawFigure, type FigureInput } from '$lib/server/reviews/own-figure';
 import { recomputeReport } from '$lib/server/reviews/recompute';
 import { typesetEquations } from '$lib/server/reviews/typeset';
 import { reviewView } from '$lib/server/reviews/view';
@@ -17,8 +17,6 @@ export const load: PageServerLoad = async ({ locals, params }) => {
 	const view = await orHttpError(reviewView(membership, params.id));
 	return { view, typeset: await orHttpError(typesetEquations(membership, params.id)) };
 };
-
-const figureKinds = ['value', 'upper-bound', 'lower-bound'] as const;
 
 export const actions: Actions = {
 	remark: async (event) => {
@@ -71,11 +69,13 @@ export const actions: Actions = {
 			enterFigure(locals.membership, params.id, {
 				runId: idIn(form, 'runId') ?? '',
 				output: field('output'),
-				kind: figureKinds.find((kind) => kind === field('kind')) ?? 'value',
+				// Checked by the use case, like every other field.
+				kind: field('kind') as FigureInput['kind'],
 				value: field('value'),
 				unit: field('unit'),
 				giveOrTake: field('giveOrTake'),
-				averages: field('averages'),
+				// The box holds the words of the result itself.
+				averages: field('same') || field('averages'),
 				route: field('route')
 			}),
 			typedValues(form)
