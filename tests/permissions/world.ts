@@ -153,6 +153,8 @@ export async function makeWorld(address: string, databaseUrl: string): Promise<W
 			return {
 				...copied,
 				member: await makeMember(db, house),
+				// One is sent again and another taken back, at the same time.
+				memberInvitation: (await inviteTo(db, house, `${randomUUID()}@people.example`, null)).id,
 				code: await codeOf(db, copied.issued as string)
 			};
 		},
