@@ -1,4 +1,5 @@
 import { randomBytes } from 'node:crypto';
+import { setTimeout as sleep } from 'node:timers/promises';
 import pg from 'pg';
 import { openDatabase, type Database } from '../db';
 import { applyMigrations } from '../db/migrate';
@@ -23,8 +24,24 @@ export async function testDatabase(): Promise<{ db: Database; url: string; drop:
 		url: url.href,
 		drop: async () => {
 			await pool.end();
-			await admin.query(`drop database ${name} with (force)`);
+			await dropDatabase(admin, name);
 			await admin.end();
 		}
 	};
+}
+
+/**
+ * A plain drop waits for the server's own vacuuming, which a role like the tests' may not end by force; force is for
+ * connections that a killed process left behind. Whichever of both is there, the next try finds it gone.
+ */
+async function dropDatabase(admin: pg.Client, name: string): Promise<void> {
+	for (let tries = 1; ; tries++) {
+		try {
+			await admin.query(`drop database ${name}${tries % 2 === 1 ? '' : ' with (force)'}`);
+			return;
+		} catch (cause) {
+			if (tries === 8) throw cause;
+			await sleep(250);
+		}
+	}
 }
