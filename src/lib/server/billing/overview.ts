@@ -80,14 +80,12 @@ export async function billingOverview(
 	const seats = await seatsOf(organisationId, db);
 	const { currency, plans: offered, pack } = plans();
 	const isEnding = subscription?.cancelAtPeriodEnd ?? false;
+	const isSubscribed = subscription !== undefined && !terminalStatuses.has(subscription.status);
 	return {
 		plan: planText(subscription, access),
 		notices: planNotices(subscription, access, seats),
-		isSubscribed: subscription !== undefined && !terminalStatuses.has(subscription.status),
-		seatsChangeable:
-			subscription !== undefined &&
-			!terminalStatuses.has(subscription.status) &&
-			!subscription.cancelAtPeriodEnd,
+		isSubscribed,
+		seatsChangeable: isSubscribed && !isEnding,
 		hasCustomer: (await customerOf(organisationId, db)) !== null,
 		seats,
 		exports: {

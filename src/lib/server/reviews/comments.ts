@@ -9,7 +9,7 @@ import type { Membership } from '../access/membership';
 import { inReach } from '../access/reach';
 import { database, type Database, type Queryable } from '../db';
 import { reports, reviewComments } from '../db/schema';
-import { issueOf } from '../reports/issue';
+import { issueOf, type IssueView } from '../reports/issue';
 import { getReport, type ReportView } from '../reports/load';
 import { coveredBy } from './approval';
 import { holdReport } from './hold';
@@ -42,13 +42,21 @@ function bodyOf(given: string): string {
 	return body;
 }
 
+const isOpen = ({ state }: Pick<ReportView, 'state'>): boolean =>
+	['draft', 'in-review', 'returned', 'approved'].includes(state);
+
 /** Remarks are for what can still be changed. */
+export function takesRemarks(
+	report: Pick<ReportView, 'state'>,
+	issue: Pick<IssueView, 'state'> | null
+): boolean {
+	return isOpen(report) && (issue === null || issue.state === 'failed');
+}
+
 async function requireUnissued(membership: Membership, report: ReportView, db: Queryable): Promise<void> {
-	const issue = await issueOf(membership, report, db);
-	const open = ['draft', 'in-review', 'returned', 'approved'].includes(report.state);
-	if (open && (issue === null || issue.state === 'failed')) return;
+	if (takesRemarks(report, await issueOf(membership, report, db))) return;
 	throw new ConflictError(
-		`Report ${report.number} is ${open ? 'being issued' : stateWords[report.state]}: a remark could no longer change it.`
+		`Report ${report.number} is ${isOpen(report) ? 'being issued' : stateWords[report.state]}: a remark could no longer change it.`
 	);
 }
 

@@ -1,7 +1,6 @@
-import { inArray } from 'drizzle-orm';
 import type { Queryable } from '../db';
-import { runs } from '../db/schema';
 import type { ReportView } from '../reports/load';
+import { calculationsOfRuns } from './run-calculations';
 
 const runIn = /^run:([0-9a-f-]{36})/;
 
@@ -19,11 +18,7 @@ export async function presentPlaces(
 	const named = places.flatMap((place) => runIn.exec(place)?.[1] ?? []);
 	const earlier = [...new Set(named)].filter((id) => !report.runIds.includes(id));
 	if (earlier.length === 0) return (place) => place;
-	const rows = await db
-		.select({ id: runs.id, calculationId: runs.calculationId })
-		.from(runs)
-		.where(inArray(runs.id, [...earlier, ...report.runIds]));
-	const calculationOf = new Map(rows.map((row) => [row.id, row.calculationId]));
+	const calculationOf = await calculationsOfRuns([...earlier, ...report.runIds], db);
 	const successors = new Map(
 		earlier.map((id) => {
 			const same = report.runIds.filter((now) => calculationOf.get(now) === calculationOf.get(id));

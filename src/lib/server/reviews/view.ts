@@ -1,4 +1,3 @@
-import { inArray } from 'drizzle-orm';
 import { methodById } from '$lib/methods';
 import { unitsFor } from '$lib/quantities';
 import { averagesOf, compareLines, reportLines, type ReportModel } from '$lib/report';
@@ -6,17 +5,17 @@ import { outputsOf } from '$lib/wording';
 import { can, requireAction } from '../access/can';
 import type { Membership } from '../access/membership';
 import { database, type Queryable } from '../db';
-import { runs } from '../db/schema';
 import { issueOf } from '../reports/issue';
 import { getReport, type ReportView } from '../reports/load';
 import { openDuties } from '../reports/open-duties';
 import { coveredBy } from './approval';
-import { commentsOf } from './comments';
+import { commentsOf, takesRemarks } from './comments';
 import { listFigures } from './own-figure';
 import { handsIn } from './people';
 import { ownWorkRefusal, selfApprovalAllowed } from './policy';
 import { lastRecomputation } from './recompute';
 import { roundsOf, roundViews, type Round } from './rounds';
+import { calculationsOfRuns } from './run-calculations';
 import { unansweredOf } from './state';
 import type { CommentView, FigureTarget, ReviewLine, ReviewView } from './types';
 import { stateWords } from './words';
@@ -33,12 +32,7 @@ async function runBefore(
 	before: readonly string[],
 	db: Queryable
 ): Promise<(id: string) => string | undefined> {
-	const ids = [...new Set([...now, ...before])];
-	const rows = await db
-		.select({ id: runs.id, calculationId: runs.calculationId })
-		.from(runs)
-		.where(inArray(runs.id, ids));
-	const calculationOf = new Map(rows.map((row) => [row.id, row.calculationId]));
+	const calculationOf = await calculationsOfRuns([...now, ...before], db);
 	return (id) => {
 		if (before.includes(id)) return id;
 		return before.find(
@@ -120,7 +114,6 @@ export async function reviewView(
 	const selfApproval = await selfApprovalAllowed(membership.organisationId, db);
 	const whyNot = refusal(membership, report, own, selfApproval);
 	const issue = await issueOf(membership, report, db);
-	const open = ['draft', 'in-review', 'returned', 'approved'].includes(report.state);
 	const { id, number, revision, title, state, version, dossier } = report;
 	return {
 		report: {
@@ -146,7 +139,7 @@ export async function reviewView(
 		mayDecide: whyNot === null,
 		whyNot,
 		ownWork: own,
-		mayComment: can(membership, 'report.comment') && open && (issue === null || issue.state === 'failed'),
+		mayComment: can(membership, 'report.comment') && takesRemarks(report, issue),
 		mayEnterFigure: whyNot === null
 	};
 }

@@ -1,7 +1,6 @@
 import { fail } from '@sveltejs/kit';
 import {
 	inviteMemberSchema,
-	invitationSchema,
 	organisationSchema,
 	removeMemberSchema,
 	rolesSchema
@@ -9,10 +8,10 @@ import {
 import { can } from '$lib/server/access/can';
 import { orHttpError } from '$lib/server/http/errors';
 import { orFormFault, readForm, typedValues } from '$lib/server/http/forms';
+import { resendAction, revokeAction } from '$lib/server/http/invitation-actions';
 import { inviteMember } from '$lib/server/organisations/invitations/invite';
 import { listOpenInvitations } from '$lib/server/organisations/invitations/open';
 import { toldOf } from '$lib/server/organisations/invitations/send';
-import { resendInvitation, revokeInvitation } from '$lib/server/organisations/invitations/withdraw';
 import { changeRoles, countSeats, listMembers, removeMember } from '$lib/server/organisations/members';
 import { readOrganisation, updateOrganisation } from '$lib/server/organisations/settings';
 import type { Actions, PageServerLoad } from './$types';
@@ -56,24 +55,8 @@ export const actions: Actions = {
 		if ('fault' in done) return done.fault;
 		return { errors: none, values: none, ...toldOf(done.data) };
 	},
-	resend: async (event) => {
-		const read = readForm(await event.request.formData(), invitationSchema);
-		if ('fault' in read) return read.fault;
-		const done = await orFormFault(event, resendInvitation(event.locals.membership, read.data.id));
-		if ('fault' in done) return done.fault;
-		return { errors: none, values: none, ...toldOf(done.data) };
-	},
-	revoke: async (event) => {
-		const read = readForm(await event.request.formData(), invitationSchema);
-		if ('fault' in read) return read.fault;
-		const done = await orFormFault(event, revokeInvitation(event.locals.membership, read.data.id));
-		if ('fault' in done) return done.fault;
-		return {
-			errors: none,
-			values: none,
-			done: `The invitation of ${done.data.email} is taken back. Its link no longer works.`
-		};
-	},
+	resend: (event) => resendAction(event),
+	revoke: (event) => revokeAction(event),
 	roles: async (event) => {
 		const form = await event.request.formData();
 		const read = readForm(form, rolesSchema);

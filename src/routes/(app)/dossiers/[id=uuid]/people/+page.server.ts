@@ -1,17 +1,12 @@
 import { error, redirect } from '@sveltejs/kit';
-import {
-	endGuestSchema,
-	invitationSchema,
-	inviteGuestSchema,
-	leaveDossierSchema
-} from '$lib/schemas/organisations';
+import { endGuestSchema, inviteGuestSchema, leaveDossierSchema } from '$lib/schemas/organisations';
 import { can } from '$lib/server/access/can';
 import { orHttpError } from '$lib/server/http/errors';
 import { orFormFault, readForm, typedValues } from '$lib/server/http/forms';
+import { resendAction, revokeAction } from '$lib/server/http/invitation-actions';
 import { endGuestAccess, leaveDossier, peopleOfDossier } from '$lib/server/organisations/guests';
 import { inviteGuest } from '$lib/server/organisations/invitations/invite';
 import { toldOf } from '$lib/server/organisations/invitations/send';
-import { resendInvitation, revokeInvitation } from '$lib/server/organisations/invitations/withdraw';
 import type { Actions, PageServerLoad } from './$types';
 
 export const load: PageServerLoad = async ({ locals: { membership }, params }) => ({
@@ -31,24 +26,8 @@ export const actions: Actions = {
 		if ('fault' in done) return done.fault;
 		return { errors: none, values: none, ...toldOf(done.data) };
 	},
-	resend: async (event) => {
-		const read = readForm(await event.request.formData(), invitationSchema);
-		if ('fault' in read) return read.fault;
-		const done = await orFormFault(event, resendInvitation(event.locals.membership, read.data.id));
-		if ('fault' in done) return done.fault;
-		return { errors: none, values: none, ...toldOf(done.data) };
-	},
-	revoke: async (event) => {
-		const read = readForm(await event.request.formData(), invitationSchema);
-		if ('fault' in read) return read.fault;
-		const done = await orFormFault(event, revokeInvitation(event.locals.membership, read.data.id));
-		if ('fault' in done) return done.fault;
-		return {
-			errors: none,
-			values: none,
-			done: `The invitation of ${done.data.email} is taken back. Its link no longer works.`
-		};
-	},
+	resend: (event) => resendAction(event),
+	revoke: (event) => revokeAction(event),
 	end: async (event) => {
 		const form = await event.request.formData();
 		const read = readForm(form, endGuestSchema);
